@@ -1,0 +1,34 @@
+import { sveltekit } from '@sveltejs/kit/vite';
+import { defineConfig } from 'vitest/config';
+
+export default defineConfig({
+  plugins: [sveltekit()],
+  worker: { format: 'es' },
+  test: {
+    reporters: ['default'],
+    projects: [
+      {
+        extends: true,
+        test: {
+          name: 'unit',
+          environment: 'node',
+          include: ['src/**/*.test.ts', 'tests/*.test.ts', 'tests/reference/**/*.test.ts', 'tests/properties/**/*.test.ts'],
+          exclude: ['src/**/*.db.test.ts'],
+          testTimeout: 60_000
+        }
+      },
+      {
+        extends: true,
+        test: {
+          name: 'integration',
+          environment: 'node',
+          include: ['src/**/*.db.test.ts', 'tests/api/**/*.test.ts'],
+          globalSetup: ['tests/harness/globalPostgres.ts'],
+          setupFiles: ['tests/harness/setupDatabase.ts'],
+          testTimeout: 60_000,
+          hookTimeout: 120_000
+        }
+      }
+    ]
+  }
+});
