@@ -1,135 +1,129 @@
-import type { QueryInterface, Transaction } from 'sequelize';
-
-export const name = '20261201T0700-add-studies';
+import { sqlMigration } from './migration';
 
 /**
  * A study is one row that the list can be drawn from, and its content is the append-only revisions beside it. A trigger
  * keeps a revision as it was written; it lets rows go only when the study itself is purged, so that the history of a
  * living study cannot be rewritten by any door.
  */
-export async function up(query: QueryInterface, transaction: Transaction): Promise<void> {
-  await query.sequelize.query(
-    `
-    CREATE TABLE studies (
-      id uuid PRIMARY KEY,
-      workspace_id uuid NOT NULL REFERENCES workspaces (id) ON DELETE CASCADE,
-      owner_id uuid NOT NULL REFERENCES users (id),
-      origin_id uuid REFERENCES studies (id) ON DELETE SET NULL,
-      title text NOT NULL,
-      place text NOT NULL,
-      kind text NOT NULL CHECK (kind IN ('competition', 'consumer-resource')),
-      species jsonb NOT NULL,
-      state text NOT NULL DEFAULT 'open' CHECK (state IN ('open', 'archived')),
-      revision integer NOT NULL DEFAULT 1 CHECK (revision > 0),
-      fingerprint text NOT NULL,
-      lock_version integer NOT NULL DEFAULT 0,
-      verdict_kind text NOT NULL,
-      verdict_consequence text NOT NULL,
-      verdict_sentence text NOT NULL,
-      part_states jsonb NOT NULL,
-      sketch jsonb,
-      search_text text NOT NULL,
-      created_at timestamptz NOT NULL DEFAULT now(),
-      updated_at timestamptz NOT NULL DEFAULT now(),
-      changed_at timestamptz NOT NULL DEFAULT now(),
-      deleted_at timestamptz,
-      deleted_by_id uuid REFERENCES users (id)
-    );
-    CREATE INDEX studies_workspace_changed ON studies (workspace_id, state, changed_at DESC) WHERE deleted_at IS NULL;
-    CREATE INDEX studies_owner ON studies (owner_id);
-    CREATE INDEX studies_deleted ON studies (deleted_at) WHERE deleted_at IS NOT NULL;
-
-    CREATE TABLE study_revisions (
-      id uuid PRIMARY KEY,
-      study_id uuid NOT NULL REFERENCES studies (id) ON DELETE CASCADE,
-      number integer NOT NULL CHECK (number > 0),
-      question jsonb NOT NULL,
-      content jsonb NOT NULL,
-      fingerprint text NOT NULL,
-      summary text NOT NULL,
-      author_id uuid NOT NULL REFERENCES users (id),
-      created_at timestamptz NOT NULL DEFAULT now(),
-      UNIQUE (study_id, number)
-    );
-
-    CREATE FUNCTION refuse_revision_change() RETURNS trigger LANGUAGE plpgsql AS $$
-    BEGIN
-      IF TG_OP = 'DELETE' AND NOT EXISTS (SELECT 1 FROM studies WHERE id = OLD.study_id) THEN
-        RETURN OLD;
-      END IF;
-      RAISE EXCEPTION 'A study revision is kept as it was written.' USING ERRCODE = 'restrict_violation';
-    END
-    $$;
-    CREATE TRIGGER study_revisions_append_only BEFORE UPDATE OR DELETE ON study_revisions
-      FOR EACH ROW EXECUTE FUNCTION refuse_revision_change();
-
-    CREATE TABLE study_shares (
-      id uuid PRIMARY KEY,
-      study_id uuid NOT NULL REFERENCES studies (id) ON DELETE CASCADE,
-      user_id uuid NOT NULL REFERENCES users (id) ON DELETE CASCADE,
-      role text NOT NULL CHECK (role IN ('contributor', 'reviewer', 'observer')),
-      shared_by_id uuid REFERENCES users (id) ON DELETE SET NULL,
-      created_at timestamptz NOT NULL DEFAULT now(),
-      updated_at timestamptz NOT NULL DEFAULT now(),
-      UNIQUE (study_id, user_id)
-    );
-    CREATE INDEX study_shares_user ON study_shares (user_id);
-
-    CREATE TABLE readings (
-      id uuid PRIMARY KEY,
-      study_id uuid NOT NULL REFERENCES studies (id) ON DELETE CASCADE,
-      part text NOT NULL CHECK (part IN ('equilibria', 'trajectories')),
-      fingerprint text NOT NULL,
-      revision integer NOT NULL,
-      sentence text NOT NULL,
-      user_id uuid NOT NULL REFERENCES users (id),
-      created_at timestamptz NOT NULL DEFAULT now()
-    );
-    CREATE INDEX readings_part ON readings (study_id, part, created_at DESC);
-
-    CREATE TABLE threads (
-      id uuid PRIMARY KEY,
-      study_id uuid NOT NULL REFERENCES studies (id) ON DELETE CASCADE,
-      number integer NOT NULL,
-      anchor_kind text NOT NULL CHECK (anchor_kind IN ('study', 'rate', 'point', 'part')),
-      anchor_key text NOT NULL,
-      anchor_quote text NOT NULL,
-      anchor_revision integer NOT NULL,
-      state text NOT NULL DEFAULT 'open' CHECK (state IN ('open', 'resolved')),
-      opener_id uuid NOT NULL REFERENCES users (id),
-      resolved_by_id uuid REFERENCES users (id),
-      resolved_at timestamptz,
-      created_at timestamptz NOT NULL DEFAULT now(),
-      updated_at timestamptz NOT NULL DEFAULT now(),
-      UNIQUE (study_id, number)
-    );
-
-    CREATE TABLE comments (
-      id uuid PRIMARY KEY,
-      thread_id uuid NOT NULL REFERENCES threads (id) ON DELETE CASCADE,
-      author_id uuid NOT NULL REFERENCES users (id),
-      kind text NOT NULL CHECK (kind IN ('must fix', 'question', 'note')),
-      body text NOT NULL,
-      revision integer NOT NULL,
-      created_at timestamptz NOT NULL DEFAULT now()
-    );
-    CREATE INDEX comments_thread ON comments (thread_id, created_at);
-    `,
-    { transaction }
+export const addStudies = sqlMigration(
+  '20261201T0700-add-studies',
+  `
+  create table studies (
+    id uuid primary key,
+    workspace_id uuid not null references workspaces (id) on delete cascade,
+    owner_id uuid not null references users (id),
+    origin_id uuid references studies (id) on delete set null,
+    title text not null,
+    place text not null,
+    kind text not null check (kind in ('competition', 'consumer-resource')),
+    species jsonb not null,
+    state text not null default 'open' check (state in ('open', 'archived')),
+    revision integer not null default 1 check (revision > 0),
+    fingerprint text not null,
+    lock_version integer not null default 0,
+    verdict_kind text not null,
+    verdict_consequence text not null,
+    verdict_sentence text not null,
+    part_states jsonb not null,
+    sketch jsonb,
+    search_text text not null,
+    created_at timestamptz not null default now(),
+    updated_at timestamptz not null default now(),
+    changed_at timestamptz not null default now(),
+    deleted_at timestamptz,
+    deleted_by_id uuid references users (id)
   );
-}
+  create index studies_workspace_changed on studies (workspace_id, state, changed_at desc) where deleted_at is null;
+  create index studies_owner on studies (owner_id);
+  create index studies_deleted on studies (deleted_at) where deleted_at is not null;
 
-export async function down(query: QueryInterface, transaction: Transaction): Promise<void> {
-  await query.sequelize.query(
-    `
-    DROP TABLE comments;
-    DROP TABLE threads;
-    DROP TABLE readings;
-    DROP TABLE study_shares;
-    DROP TABLE study_revisions;
-    DROP FUNCTION refuse_revision_change();
-    DROP TABLE studies;
-    `,
-    { transaction }
+  create table study_revisions (
+    id uuid primary key,
+    study_id uuid not null references studies (id) on delete cascade,
+    number integer not null check (number > 0),
+    question jsonb not null,
+    content jsonb not null,
+    fingerprint text not null,
+    summary text not null,
+    author_id uuid not null references users (id),
+    created_at timestamptz not null default now(),
+    unique (study_id, number)
   );
-}
+
+  create function refuse_revision_change() returns trigger language plpgsql as $$
+  begin
+    if tg_op = 'DELETE' and not exists (select 1 from studies where id = old.study_id) then
+      return old;
+    end if;
+    raise exception 'A study revision is kept as it was written.' using errcode = 'restrict_violation';
+  end
+  $$;
+  create trigger study_revisions_append_only before update or delete on study_revisions
+    for each row execute function refuse_revision_change();
+
+  create table study_shares (
+    id uuid primary key,
+    study_id uuid not null references studies (id) on delete cascade,
+    user_id uuid not null references users (id) on delete cascade,
+    role text not null check (role in ('contributor', 'reviewer', 'observer')),
+    shared_by_id uuid references users (id) on delete set null,
+    created_at timestamptz not null default now(),
+    updated_at timestamptz not null default now(),
+    unique (study_id, user_id)
+  );
+  create index study_shares_user on study_shares (user_id);
+
+  create table readings (
+    id uuid primary key,
+    study_id uuid not null references studies (id) on delete cascade,
+    part text not null check (part in ('equilibria', 'trajectories')),
+    fingerprint text not null,
+    revision integer not null,
+    sentence text not null,
+    user_id uuid not null references users (id),
+    created_at timestamptz not null default now()
+  );
+  create index readings_part on readings (study_id, part, created_at desc);
+
+  create table threads (
+    id uuid primary key,
+    study_id uuid not null references studies (id) on delete cascade,
+    number integer not null,
+    anchor_kind text not null check (anchor_kind in ('study', 'rate', 'point', 'part')),
+    anchor_key text not null,
+    anchor_quote text not null,
+    anchor_revision integer not null,
+    state text not null default 'open' check (state in ('open', 'resolved')),
+    opener_id uuid not null references users (id),
+    resolved_by_id uuid references users (id),
+    resolved_at timestamptz,
+    created_at timestamptz not null default now(),
+    updated_at timestamptz not null default now(),
+    unique (study_id, number)
+  );
+
+  create table comments (
+    id uuid primary key,
+    thread_id uuid not null references threads (id) on delete cascade,
+    author_id uuid not null references users (id),
+    kind text not null check (kind in ('must fix', 'question', 'note')),
+    body text not null,
+    revision integer not null,
+    created_at timestamptz not null default now()
+  );
+  create index comments_thread on comments (thread_id, created_at);
+
+  alter table invitations add constraint invitations_study
+    foreign key (study_id) references studies (id) on delete cascade;
+  `,
+  `
+  alter table invitations drop constraint invitations_study;
+  drop table comments;
+  drop table threads;
+  drop table readings;
+  drop table study_shares;
+  drop table study_revisions;
+  drop function refuse_revision_change();
+  drop table studies;
+  `
+);

@@ -1,0 +1,89 @@
+import type { Transaction } from 'sequelize';
+import type { StudyContent } from '$lib/contracts/content';
+import type { StudyQuestion } from '$lib/contracts/study';
+import type { Actor, Context } from '../context';
+import { Study } from '../db/models/Study';
+import { StudyRevision } from '../db/models/StudyRevision';
+import { StudyShare } from '../db/models/StudyShare';
+import { refusal } from '../errors';
+import { abilitiesOf, authorize, requireActor, type StudyAct, type StudySubject } from '../policies/ability';
+
+const UUID = /^[0-9a-f]{8}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{12}$/i;
+
+export interface OpenStudy {
+  study: Study;
+  actor: Actor;
+  subject: StudySubject;
+  abilities: StudyAct[];
+}
+
+interface OpenOptions {
+  transaction?: Transaction;
+  /** Hold the row until the transaction ends, so that two writers queue. */
+  lock?: boolean;
+  /** Look among the deleted instead of the living. */
+  deleted?: boolean;
+  /** Who opened the thread in question, for `study.resolve`. */
+  openerId?: string;
+}
+
+/** Whether a text can be the id of a row at all; anything else is simply not there. */
+export function isUuid(text: string): boolean {
+  return UUID.test(text);
+}
+
+/**
+ * Finds a study and checks that the actor may do the act to it: the one door through which every command and query on a
+ * study goes. Throws 401 when nobody is signed in, 404 when there is none or it may not be read, 403 otherwise.
+ */
+export async function openStudy(
+  context: Context,
+  studyId: string,
+  act: StudyAct,
+  options: OpenOptions = {}
+): Promise<OpenStudy> {
+  const actor = requireActor(context.actor);
+  const { transaction } = options;
+  const study = isUuid(studyId)
+    ? await Study.findByPk(studyId, { transaction, lock: options.lock ? transaction?.LOCK.UPDATE : undefined })
+    : null;
+  if (!study || (study.deletedAt !== null) !== (options.deleted ?? false)) throw refusal('study.notFound');
+  const shares = await StudyShare.findAll({ where: { studyId, userId: actor.userId }, transaction });
+  const subject: StudySubject = {
+    kind: 'study',
+    workspaceId: study.workspaceId,
+    ownerId: study.ownerId,
+    shares: shares.map(({ userId, role }) => ({ userId, role })),
+    openerId: options.openerId ?? null
+  };
+  authorize(actor, act, subject);
+  const abilities = abilitiesOf(actor, subject);
+  return { study, actor, subject, abilities: study.state === 'archived' ? abilities.filter(whileArchived) : abilities };
+}
+
+/** An archived study is read, copied, exported and restored, but not changed. */
+function whileArchived(act: StudyAct): boolean {
+  return !['study.edit', 'study.comment', 'study.resolve', 'study.archive'].includes(act);
+}
+
+/** Throws 409 where the study is archived. Call after authorisation, so that an outsider learns nothing. */
+export function requireOpen(study: Study): void {
+  if (study.state === 'archived') throw refusal('study.archived');
+}
+
+export interface StudyText {
+  number: number;
+  question: StudyQuestion;
+  content: StudyContent;
+}
+
+/** One revision of a study, by default the latest. Throws 404 where there is none of that number. */
+export async function readRevision(
+  study: Study,
+  number = study.revision,
+  transaction?: Transaction
+): Promise<StudyRevision> {
+  const found = await StudyRevision.findOne({ where: { studyId: study.id, number }, transaction });
+  if (!found) throw refusal('study.notFound', { message: `This study has no revision ${number}.` });
+  return found;
+}
