@@ -1,0 +1,70 @@
+/** Refusals as RFC 9457 problem documents. */
+import { STATUS_CODES } from 'node:http';
+import type { z } from 'zod';
+import type { Problem } from '$lib/contracts/problem';
+import { AppError, refusal, type FieldIssue } from '../errors';
+
+/** The document of a refusal. */
+export function problemOf(error: AppError, requestId: string): Problem {
+  return {
+    type: 'about:blank',
+    title: STATUS_CODES[error.status] ?? 'Refused',
+    status: error.status,
+    detail: error.message,
+    code: error.code,
+    requestId,
+    ...(error.issues.length ? { issues: error.issues } : {})
+  };
+}
+
+/** The document of a fault: nothing about its cause leaves the server but the id to ask for. */
+export function problemOfFault(requestId: string): Problem {
+  return {
+    type: 'about:blank',
+    title: 'Internal Server Error',
+    status: 500,
+    detail: `Something failed on our side. It is on record as ${requestId}.`,
+    code: 'fault',
+    requestId
+  };
+}
+
+/** A problem document as a response, with the headers that belong to its status. */
+export function problemResponse(problem: Problem, retryAfterSeconds: number | null = null): Response {
+  const headers = new Headers({ 'content-type': 'application/problem+json', 'cache-control': 'no-store' });
+  if (problem.status === 401) headers.set('www-authenticate', 'Bearer realm="sedgeline"');
+  const wait = retryAfterSeconds ?? (problem.status === 503 ? 10 : null);
+  if (wait !== null) headers.set('retry-after', String(wait));
+  return new Response(JSON.stringify(problem), { status: problem.status, headers });
+}
+
+type Complaint = z.core.$ZodIssue;
+
+function complaintsOf(issue: Complaint, base: string[]): FieldIssue[] {
+  const path = [...base, ...issue.path.map(String)];
+  if (issue.code === 'unrecognized_keys') {
+    return issue.keys.map((key) => ({ path: [...path, key].join('.'), message: 'There is no such field.' }));
+  }
+  // Of several alternatives the one that got furthest is the one that was meant.
+  if (issue.code === 'invalid_union' && issue.errors.length > 0) {
+    const depth = (branch: Complaint[]) => Math.max(0, ...branch.map((inner) => inner.path.length));
+    const [best = []] = [...issue.errors].sort((a, b) => depth(b) - depth(a) || a.length - b.length);
+    if (depth(best) > 0) return best.flatMap((inner) => complaintsOf(inner, path));
+  }
+  return [{ path: path.join('.'), message: issue.message }];
+}
+
+/** What a schema complains of, by dotted path; an unknown field is named itself, not its parent. */
+export function issuesOf(error: z.core.$ZodError): FieldIssue[] {
+  return error.issues.flatMap((issue) => complaintsOf(issue, []));
+}
+
+/** Parses a value, or throws the 422 that names every field at fault. */
+export function parseValue<S extends z.ZodType>(schema: S, value: unknown): z.output<S> {
+  const parsed = schema.safeParse(value);
+  if (parsed.success) return parsed.data;
+  const issues = issuesOf(parsed.error);
+  const first = issues[0];
+  const message = first ? `${first.path || 'The body'}: ${first.message}` : undefined;
+  throw refusal('input.invalid', { issues, message });
+}
