@@ -1,0 +1,7 @@
+/** The one public door of the study: what the server and the browser both know about a question, its rates and its model. */
+export * from './format';
+export * from './units';
+export * from './rateUnits';
+export * from './rates';
+export * from './resolve';
+export * from './assemble';
