@@ -21,20 +21,28 @@ export interface Problem {
   /** [t0, t1]; t1 < t0 integrates backwards. */
   span: readonly [number, number];
   events?: readonly EventSpec[];
+  /** Row-major n x n slopes of `rhs` by state into `out`; used by the implicit method, by differences when absent. */
+  jacobian?: (t: number, y: Float64Array, out: Float64Array) => void;
 }
 
+/** `auto` begins explicitly and turns implicit for good once stability, not accuracy, dictates very many steps. */
+export type MethodChoice = 'auto' | 'dormand-prince' | 'radau';
+
 export interface SolveOptions {
-  /** Relative tolerance, default 1e-8. */
-  rtol?: number;
+  method?: MethodChoice;
+  /** Relative tolerance: one number or one a component, default 1e-8. */
+  rtol?: number | ArrayLike<number>;
   /** Absolute tolerance: one number or one a component, default 1e-10. */
   atol?: number | ArrayLike<number>;
   /** Largest step size; default |t1 - t0|. */
   maxStep?: number;
+  /** Every step of this size, accepted whatever its error: for measuring the order of the method. */
+  fixedStep?: number;
   /** Budget of accepted and rejected steps together, default 200 000. */
   maxSteps?: number;
   /** Asked every few hundred steps; true stops with reason 'budget'. The clock is the caller's. */
   shouldStop?: () => boolean;
-  /** Output times, monotone in the direction of integration; filled by dense output. */
+  /** Output times, monotone in the direction of integration; filled by dense output. Absent: the steps themselves. */
   times?: ArrayLike<number>;
   /** Keep the dense solution so that any time can be asked for later. */
   dense?: boolean;
@@ -58,4 +66,9 @@ export interface Solution {
   at?: (t: number, out: Float64Array) => void;
   /** True when the step size was held down by stability rather than accuracy for a long stretch. */
   stiff: boolean;
+  /** The method that took the last step. */
+  method: 'dormand-prince' | 'radau';
+  /** Time and state where the integration ended. */
+  tEnd: number;
+  yEnd: Float64Array;
 }
