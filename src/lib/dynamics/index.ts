@@ -4,6 +4,6 @@ export * from './analysis/results';
 export * from './solve/problem';
 export { compile } from './model/compile';
 export { checkModel } from './model/check';
-
-/** Version of the engine, printed with every result. */
-export const ENGINE_VERSION = '1.0.0';
+export { integrate } from './solve/integrate';
+export * from './analysis/trajectory';
+export { ENGINE_VERSION } from './version';
