@@ -1,10 +1,16 @@
 import { redirect, type RequestEvent } from '@sveltejs/kit';
 import type { Actor } from '../context';
 
-/** Only a path of our own may follow a sign-in; anything else could lead a person elsewhere. */
+/**
+ * Only a path of our own may follow a sign-in; anything else could lead a person elsewhere. It is read the way a
+ * browser reads it, which drops tabs and takes a backslash for a slash.
+ */
 export function safeNext(next: string | null, fallback = '/studies'): string {
-  if (!next || !/^\/(?![/\\])/.test(next) || /[\u0000-\u001f\\]/.test(next)) return fallback;
-  return next;
+  const ours = 'http://ours.invalid';
+  if (!next?.startsWith('/') || !URL.canParse(next, ours)) return fallback;
+  const url = new URL(next, ours);
+  // "/.//elsewhere" is read as "//elsewhere", which names another host.
+  return url.origin === ours && !url.pathname.startsWith('//') ? url.pathname + url.search + url.hash : fallback;
 }
 
 /** Where to sign in and come back from. */

@@ -1,0 +1,106 @@
+import type { Transaction } from 'sequelize';
+import { recordAudit } from '../audit/record';
+import { loadActor } from '../auth/loadActor';
+import { hashPassword, weaknessOf } from '../auth/passwords';
+import { hashSecret } from '../auth/secrets';
+import type { Context } from '../context';
+import { Invitation } from '../db/models/Invitation';
+import { Membership } from '../db/models/Membership';
+import { User } from '../db/models/User';
+import { withTransaction } from '../db/transaction';
+import { invalid, refusal } from '../errors';
+import { grantShare } from './grantShare';
+
+export interface NewPerson {
+  name: string;
+  password: string;
+}
+
+export interface Accepted {
+  userId: string;
+  /** Where the person finds what they were invited to. */
+  path: string;
+}
+
+/** The open invitation of a link. Throws 404 when it is unknown, used, withdrawn or past its date. */
+export async function findInvitation(context: Context, token: string, transaction?: Transaction): Promise<Invitation> {
+  const invitation = await Invitation.findOne({
+    where: { tokenHash: hashSecret(token), acceptedAt: null, withdrawnAt: null },
+    transaction,
+    // Two posts of one link must not both find it open.
+    ...(transaction ? { lock: transaction.LOCK.UPDATE } : {})
+  });
+  if (!invitation || invitation.expiresAt <= context.now()) throw refusal('invitation.notFound');
+  return invitation;
+}
+
+async function personOf(
+  context: Context,
+  transaction: Transaction,
+  email: string,
+  person: NewPerson | null
+): Promise<User> {
+  const user = await User.findOne({ where: { email }, transaction });
+  if (context.actor) {
+    // A link that was passed on must not let in whoever it was passed to.
+    if (!user || context.actor.userId !== user.id) throw refusal('invitation.otherPerson');
+    return user;
+  }
+  if (user || !person) throw refusal('invitation.signInFirst');
+  const weakness = weaknessOf(person.password, { email, name: person.name });
+  if (weakness) throw invalid('password', weakness);
+  return User.create({ email, name: person.name, passwordHash: await hashPassword(person.password) }, { transaction });
+}
+
+async function joinWorkspace(
+  context: Context,
+  transaction: Transaction,
+  invitation: Invitation,
+  user: User
+): Promise<void> {
+  const { workspaceId, workspaceRole: role } = invitation;
+  if (!workspaceId || !role) return;
+  const [, joined] = await Membership.findOrCreate({
+    where: { workspaceId, userId: user.id },
+    defaults: { workspaceId, userId: user.id, role },
+    transaction
+  });
+  if (!joined) return;
+  await recordAudit(context, transaction, {
+    act: 'member.join',
+    subjectType: 'user',
+    subjectId: user.id,
+    workspaceId,
+    details: { email: user.email, role },
+    by: { userId: user.id, name: user.name }
+  });
+}
+
+/**
+ * Accepts an invitation: as the signed-in person it was sent to, or as somebody new, whose address the link has proved.
+ * A role that the person holds already is left as it is. Throws 404 (link), 403 (another person is signed in),
+ * 409 (an account exists: sign in), 422 (password).
+ */
+export async function acceptInvitation(context: Context, token: string, person: NewPerson | null): Promise<Accepted> {
+  return withTransaction(async (transaction) => {
+    const invitation = await findInvitation(context, token, transaction);
+    const user = await personOf(context, transaction, invitation.email, person);
+    await invitation.update({ acceptedAt: context.now(), acceptedById: user.id }, { transaction });
+    await joinWorkspace(context, transaction, invitation, user);
+    const { studyId, studyRole, workspaceId } = invitation;
+    if (studyId && studyRole) {
+      const actor = await loadActor(user.id, context.actor?.via ?? 'session', undefined, transaction);
+      await grantShare({ ...context, actor }, transaction, { studyId, userId: user.id, role: studyRole });
+    }
+    await recordAudit(context, transaction, {
+      act: 'invitation.accept',
+      subjectType: 'invitation',
+      subjectId: invitation.id,
+      studyId,
+      workspaceId,
+      details: { email: user.email },
+      by: { userId: user.id, name: user.name }
+    });
+    return { userId: user.id, path: studyId ? `/studies/${studyId}` : '/studies' };
+  });
+}
