@@ -9,7 +9,7 @@ import { log } from '../log';
 import { startUp } from '../startUp';
 import { unavailableResponse } from './unavailable';
 
-export const THEME_COOKIE = 'sedgeline_theme';
+export const THEME_COOKIE = 'theme';
 
 const isApi = (event: RequestEvent) => event.url.pathname.startsWith('/api/');
 
