@@ -6,4 +6,5 @@ export { compile } from './model/compile';
 export { checkModel } from './model/check';
 export { integrate } from './solve/integrate';
 export * from './analysis/trajectory';
+export { coordinatesFor, formFor, netAdditionOf, type Form } from './analysis/coordinates';
 export { ENGINE_VERSION } from './version';
