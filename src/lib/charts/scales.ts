@@ -146,3 +146,18 @@ export function withUnit(label: string, unit: string): string {
   if (!unit) return label;
   return /^(per|in|of|a|an)\b/.test(unit) ? `${label} ${unit}` : `${label}, ${unit}`;
 }
+
+/** What must follow a number, invisibly, so that a column lines up on the decimal point: "", "0", ".00". */
+export function decimalFill(text: string, decimals: number): string {
+  const own = text.includes('.') ? text.length - text.indexOf('.') - 1 : 0;
+  if (own >= decimals) return '';
+  return (own === 0 ? '.' : '') + '0'.repeat(decimals - own);
+}
+
+/** Most decimals among the texts of a column. */
+export function decimalsOf(texts: readonly string[]): number {
+  return Math.max(
+    0,
+    ...texts.map((text) => (text.includes('.') && !text.includes('×') ? text.length - text.indexOf('.') - 1 : 0))
+  );
+}
