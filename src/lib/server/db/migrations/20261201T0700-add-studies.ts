@@ -113,11 +113,11 @@ export const addStudies = sqlMigration(
   );
   create index comments_thread on comments (thread_id, created_at);
 
-  alter table invitations add constraint invitations_study
+  alter table invitations add constraint invitations_study_exists
     foreign key (study_id) references studies (id) on delete cascade;
   `,
   `
-  alter table invitations drop constraint invitations_study;
+  alter table invitations drop constraint invitations_study_exists;
   drop table comments;
   drop table threads;
   drop table readings;
