@@ -1,0 +1,105 @@
+import { describe, expect, it } from 'vitest';
+import type { ConsumerResourceModel } from '../model/spec';
+import { limitCycles, shareBelow } from './limitCycles';
+import { reportAt } from './reportAt.fixture';
+import { simulate } from './trajectory';
+
+const rosenzweig = (r: number, K: number, a: number, h: number, e: number, m: number): ConsumerResourceModel => ({
+  interaction: 'consumer-resource',
+  first: { growth: { kind: 'logistic', r, K } },
+  second: { mortality: m },
+  feeding: { response: 'holling-2', a, h, e }
+});
+const interior = (spec: ConsumerResourceModel) => {
+  const { a, h = 0, e } = spec.feeding;
+  const m = spec.second.mortality ?? 0;
+  const x = m / (a * (e - m * h));
+  const growth = spec.first.growth;
+  const perHead = growth.kind === 'logistic' ? growth.r * (1 - x / growth.K) : growth.r;
+  return reportAt(spec, [[x, (perHead * (1 + a * h * x)) / a]]);
+};
+
+describe('limitCycles', () => {
+  it('finds the one cycle beyond the Hopf point, with its period, extremes, means and multiplier', () => {
+    const spec = rosenzweig(0.07, 10, 1 / 750, 250, 15, 0.025);
+    const cycles = limitCycles(spec, interior(spec));
+    expect(cycles).toHaveLength(1);
+    const cycle = cycles[0]!;
+    // Worked independently with an implicit method in logarithms.
+    expect(cycle.period).toBeCloseTo(280.7507, 3);
+    expect(cycle.xMin).toBeCloseTo(0.2216, 4);
+    expect(cycle.xMax).toBeCloseTo(7.5833, 4);
+    expect(cycle.xMean).toBeCloseTo(3.2807, 4);
+    expect(cycle.yMin).toBeCloseTo(18.825, 3);
+    expect(cycle.yMax).toBeCloseTo(130.415, 3);
+    expect(cycle.yMean).toBeCloseTo(60.47, 2);
+    expect(shareBelow(cycle, 'first', 3)).toBeCloseTo(0.531, 3);
+    expect(cycle.stability).toBe('stable');
+    expect(cycle.points[0]!.x).toBeCloseTo(cycle.points.at(-1)!.x, 6);
+  });
+
+  it('agrees with where long paths end, from inside and from outside', () => {
+    const spec = rosenzweig(1, 90, 0.1, 0.5, 0.5, 0.5);
+    const [cycle] = limitCycles(spec, interior(spec));
+    for (const start of [
+      { x: 14, y: 14 },
+      { x: 59, y: 1 }
+    ]) {
+      const path = simulate(spec, {
+        start,
+        span: [0, 2000],
+        times: Array.from({ length: 4001 }, (_, i) => 1900 + i / 40)
+      });
+      expect(Math.max(...path.x) / cycle!.xMax).toBeCloseTo(1, 4);
+      expect(Math.min(...path.x) / cycle!.xMin).toBeCloseTo(1, 3);
+      expect(Math.max(...path.y) / cycle!.yMax).toBeCloseTo(1, 4);
+    }
+  });
+
+  it('finds none where the equilibrium attracts', () => {
+    const spec = rosenzweig(1, 25, 0.1, 0.5, 0.5, 0.5);
+    expect(limitCycles(spec, interior(spec))).toEqual([]);
+  });
+
+  it('follows a small cycle down towards its birth', () => {
+    const radius = [45.1, 45.4].map((K) => {
+      const spec = rosenzweig(1, K, 0.1, 0.5, 0.5, 0.45);
+      const hopf = 20 + 2 * interior(spec).equilibria[0]!.x;
+      const near = rosenzweig(1, hopf * (K / 45), 0.1, 0.5, 0.5, 0.45);
+      const [cycle] = limitCycles(near, interior(near));
+      expect(cycle?.stability).toBe('stable');
+      return cycle!.xMax - cycle!.xMin;
+    });
+    // The radius grows as the square root of the distance to the Hopf point.
+    expect(radius[1]! / radius[0]!).toBeCloseTo(2, 1);
+  });
+
+  it('reports no cycle where every orbit is closed', () => {
+    const spec: ConsumerResourceModel = {
+      interaction: 'consumer-resource',
+      first: { growth: { kind: 'exponential', r: 0.8 } },
+      second: { mortality: 0.3 },
+      feeding: { response: 'holling-1', a: 0.02, e: 0.25 }
+    };
+    const report = reportAt(spec, [[60, 40]]);
+    expect(limitCycles(spec, report)).toEqual([]);
+    // Nor does it rest on the class alone.
+    const unclassified = {
+      ...report,
+      equilibria: report.equilibria.map((p) => ({ ...p, class: 'stable spiral' as const }))
+    };
+    expect(limitCycles(spec, unclassified)).toEqual([]);
+  });
+
+  it('averages as an even sampling of the turn does', () => {
+    const spec = rosenzweig(0.07, 10, 1 / 750, 250, 15, 0.025);
+    const [cycle] = limitCycles(spec, interior(spec));
+    const { x, y, period } = { ...cycle!.points[0]!, period: cycle!.period };
+    const path = simulate(spec, { start: { x, y }, span: [0, period], samples: 4001, rtol: 1e-9 });
+    // The trapezium rule converges at once on a periodic function.
+    const mean = (list: number[]): number => list.slice(1).reduce((a, b) => a + b, 0) / (list.length - 1);
+    expect(mean(path.x) / cycle!.xMean).toBeCloseTo(1, 7);
+    expect(mean(path.y) / cycle!.yMean).toBeCloseTo(1, 7);
+    expect(shareBelow(cycle!, 'first', 3)).toBeCloseTo(path.x.filter((v) => v < 3).length / 4001, 3);
+  });
+});

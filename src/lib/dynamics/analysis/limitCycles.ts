@@ -1,0 +1,266 @@
+/** Closed orbits that attract or repel: found on a section through an equilibrium, measured over one turn. */
+import { compile } from '../model/compile';
+import type { ModelSpec, SpeciesKey, System } from '../model/spec';
+import { bracketedRoot } from '../solve/bracket';
+import { integrate } from '../solve/integrate';
+import type { EventSpec } from '../solve/problem';
+import { coordinatesFor, formFor, netAdditionOf, type Coordinates } from './coordinates';
+import type { EquilibriaReport, Equilibrium } from './results';
+
+export interface CyclePoint {
+  /** Time since the start of the turn. */
+  t: number;
+  x: number;
+  y: number;
+}
+
+export interface LimitCycle {
+  /** Index, in the report, of the equilibrium it was found around. */
+  around: number;
+  period: number;
+  /** One turn, the first point repeated as the last; close together where the path bends or hurries. */
+  points: CyclePoint[];
+  xMin: number;
+  xMax: number;
+  yMin: number;
+  yMax: number;
+  /** Averages over time. */
+  xMean: number;
+  yMean: number;
+  /** Factor by which a small deviation shrinks (below 1) or grows in one turn. */
+  multiplier: number;
+  stability: 'stable' | 'unstable' | 'undetermined';
+}
+
+/** Smallest deviation from the equilibrium looked at, in the logarithm of the resource. */
+const INNERMOST = 1e-3;
+/** Where the resource has no ceiling of its own, e^5 times the equilibrium is as far as the search goes. */
+const OUTERMOST_UNBOUNDED = 5;
+const GRID = 32;
+const SCAN_RTOL = 1e-10;
+const FINE_RTOL = 1e-12;
+/** A turn may take this many times what it takes close to the equilibrium. */
+const LONGEST_TURN = 400;
+const MOST_STEPS = 20_000;
+/** Returns closer to the start than this, relative, on each of three turns mean that all orbits are closed. */
+const CLOSED = 1e-6;
+/** |ln multiplier| below this decides nothing. */
+const UNDECIDED = 1e-7;
+
+/** Return map of the half line y = yE, x > xE, in s = ln(x/xE). */
+interface Section {
+  /** Where the path from s comes back, and when; null when it does not. */
+  turn(s: number, rtol: number): { s: number; time: number } | null;
+  sMax: number;
+  coordinates: Coordinates;
+  start(s: number): Float64Array;
+}
+
+/** Largest abundance of the resource that can be sustained without consumers: no closed orbit goes beyond it. */
+function resourceCeiling(system: System, xE: number): number {
+  const slope = new Float64Array(2);
+  const grows = (x: number): boolean => {
+    system.rhs(x, 0, slope);
+    return slope[0]! > 0;
+  };
+  const limit = xE * Math.exp(OUTERMOST_UNBOUNDED);
+  let high = xE;
+  while (high < limit && grows(high)) high *= 1.5;
+  if (high >= limit) return limit;
+  let low = high / 1.5;
+  for (let i = 0; i < 60; i++) {
+    const middle = (low + high) / 2;
+    if (grows(middle)) low = middle;
+    else high = middle;
+  }
+  return high;
+}
+
+function sectionThrough(spec: ModelSpec, system: System, point: Equilibrium): Section {
+  const c = coordinatesFor(system, [
+    formFor(point.x, netAdditionOf(spec, 'first')),
+    formFor(point.y, netAdditionOf(spec, 'second'))
+  ]);
+  const home = new Float64Array(2);
+  c.fromPlane(point.x, point.y, home);
+  const level = home[1]!;
+  // Only above the equilibrium's resource does the consumer increase there, so every rise through the line is a return.
+  const events: EventSpec[] = [{ value: (_, z) => z[1]! - level, direction: 1, terminal: true }];
+  for (const i of [0, 1]) {
+    if (c.forms[i] === 'plain') events.push({ value: (_, z) => z[i]!, direction: -1, terminal: true });
+  }
+  const horizon = (LONGEST_TURN * 2 * Math.PI) / Math.sqrt(Math.abs(point.determinant));
+  const start = (s: number): Float64Array => {
+    const z = new Float64Array(2);
+    c.fromPlane(point.x * Math.exp(s), point.y, z);
+    z[1] = level;
+    return z;
+  };
+  return {
+    coordinates: c,
+    sMax: Math.log(resourceCeiling(system, point.x) / point.x),
+    start,
+    turn(s, rtol) {
+      const solution = integrate(
+        { rhs: c.rhs, jacobian: c.jacobian, y0: start(s), span: [0, horizon], events },
+        { ...c.tolerances(rtol, rtol * Math.min(point.x, point.y)), maxSteps: MOST_STEPS, times: [] }
+      );
+      if (solution.outcome.status !== 'event' || solution.outcome.event !== 0) return null;
+      return { s: Math.log(c.x(solution.yEnd) / point.x), time: solution.tEnd };
+    }
+  };
+}
+
+/** ln(return/start) on a grid; brackets of its zeros, and of hidden pairs of zeros. */
+function bracketsOn(section: Section, from: number, to: number): [number, number][] {
+  const gain = (s: number): number => {
+    const back = section.turn(s, SCAN_RTOL);
+    return back === null || !(back.s > 0) ? NaN : Math.log(back.s / s);
+  };
+  const s = Array.from({ length: GRID + 1 }, (_, i) => from * Math.pow(to / from, i / GRID));
+  if ([0.6, 0.7, 0.8].every((part) => Math.abs(gain(s[Math.round(part * GRID)]!)) < CLOSED)) return [];
+  const g = s.map(gain);
+  const brackets: [number, number][] = [];
+  for (let i = 1; i <= GRID; i++) {
+    if (g[i - 1]! * g[i]! < 0) brackets.push([s[i - 1]!, s[i]!]);
+    if (i < 2) continue;
+    const [left, middle, right] = [g[i - 2]!, g[i - 1]!, g[i]!];
+    const sign = Math.sign(middle);
+    if (!(sign * left > sign * middle && sign * right > sign * middle && sign * middle > 0)) continue;
+    // The gain comes nearest to zero here: two orbits may hide between the points of the grid.
+    let low = s[i - 2]!;
+    let high = s[i]!;
+    for (let j = 0; j < 24; j++) {
+      const a = low + 0.382 * (high - low);
+      const b = low + 0.618 * (high - low);
+      const ga = gain(a);
+      const gb = gain(b);
+      const through = sign * ga < 0 ? a : sign * gb < 0 ? b : null;
+      if (through !== null) {
+        brackets.push([s[i - 2]!, through], [through, s[i]!]);
+        break;
+      }
+      if (sign * ga < sign * gb) high = b;
+      else low = a;
+    }
+  }
+  return brackets.sort((p, q) => p[0] - q[0]);
+}
+
+/** Follows one turn with its integrals. The section's s must be a fixed point of the return map. */
+function measure(system: System, section: Section, around: number, s: number, period: number): LimitCycle {
+  const c = section.coordinates;
+  const slopes = new Float64Array(4);
+  const plane = section.start(s);
+  const x0 = c.x(plane);
+  const y0 = c.y(plane);
+  const speed = new Float64Array(2);
+  const rhs = (t: number, z: Float64Array, out: Float64Array): void => {
+    c.rhs(t, z, out);
+    const x = c.x(z);
+    const y = c.y(z);
+    system.jacobian(x, y, slopes);
+    out[2] = slopes[0]! + slopes[3]!;
+    out[3] = x / period;
+    out[4] = y / period;
+  };
+  const events: EventSpec[] = [0, 1].map((i) => ({
+    value: (t, z) => {
+      c.rhs(t, z, speed);
+      return speed[i]!;
+    },
+    direction: 0,
+    terminal: false
+  }));
+  const { rtol, atol } = c.tolerances(FINE_RTOL, FINE_RTOL * Math.min(x0, y0));
+  const solution = integrate(
+    { rhs, y0: [plane[0]!, plane[1]!, 0, 0, 0], span: [0, period], events },
+    {
+      rtol: [...rtol, FINE_RTOL, FINE_RTOL, FINE_RTOL],
+      atol: [...atol, FINE_RTOL, FINE_RTOL * x0, FINE_RTOL * y0],
+      method: 'dormand-prince'
+    }
+  );
+  const points = Array.from(solution.t, (t, i) => ({
+    t,
+    x: c.x(solution.y.subarray(5 * i, 5 * i + 2)),
+    y: c.y(solution.y.subarray(5 * i, 5 * i + 2))
+  }));
+  const xs = [x0, ...solution.events.map((e) => c.x(e.y))];
+  const ys = [y0, ...solution.events.map((e) => c.y(e.y))];
+  const exponent = solution.yEnd[2]!;
+  return {
+    around,
+    period,
+    points,
+    xMin: Math.min(...xs),
+    xMax: Math.max(...xs),
+    yMin: Math.min(...ys),
+    yMax: Math.max(...ys),
+    xMean: solution.yEnd[3]!,
+    yMean: solution.yEnd[4]!,
+    multiplier: Math.exp(exponent),
+    stability: Math.abs(exponent) < UNDECIDED ? 'undetermined' : exponent < 0 ? 'stable' : 'unstable'
+  };
+}
+
+/**
+ * Limit cycles of a model around its equilibria.
+ * @param spec a checked model. @param report its equilibria.
+ * @returns cycles from the innermost outwards; none for competition, where both species lose by each other's increase and
+ *   every bounded path settles, and none for the classical model, whose orbits are all closed.
+ *   Found on a grid of starts refined by bracketing, so two cycles nearer to each other than the grid may both be missed.
+ *   Never throws.
+ * @source strogatz2015 §8.7 (return map), kuznetsov2004 §1.5 (multiplier by Liouville's formula), hofbauerSigmund1998 §3.4
+ */
+export function limitCycles(spec: ModelSpec, report: EquilibriaReport): LimitCycle[] {
+  if (spec.interaction === 'competition') return [];
+  const system = compile(spec);
+  const found: LimitCycle[] = [];
+  report.equilibria.forEach((point, index) => {
+    if (!point.feasible || !(point.x > 0) || !(point.y > 0)) return;
+    // A closed orbit goes round points whose indices sum to 1, hence round at least one that is no saddle.
+    if (!(point.determinant > 0) || point.class === 'centre') return;
+    const section = sectionThrough(spec, system, point);
+    if (!(section.sMax > INNERMOST)) return;
+    for (const [low, high] of bracketsOn(section, INNERMOST, section.sMax)) {
+      const miss = (s: number): number => (section.turn(s, FINE_RTOL)?.s ?? NaN) - s;
+      const atLow = miss(low);
+      const atHigh = miss(high);
+      if (!(atLow * atHigh <= 0)) continue;
+      const s = bracketedRoot(miss, low, high, atLow, atHigh, 1e-13);
+      const turn = section.turn(s, FINE_RTOL);
+      if (turn === null || !(Math.abs(turn.s - s) < 1e-6 * s)) continue;
+      const cycle = measure(system, section, index, s, turn.time);
+      const known = found.some(
+        (other) =>
+          Math.abs(other.period / cycle.period - 1) < 1e-6 &&
+          Math.abs(other.xMax / cycle.xMax - 1) < 1e-6 &&
+          Math.abs(other.yMax / cycle.yMax - 1) < 1e-6
+      );
+      if (!known) found.push(cycle);
+    }
+  });
+  return found;
+}
+
+/**
+ * Share of the time that a species spends below a level on a cycle, 0 to 1; abundance is taken as exponential between points.
+ * @param level abundance. @returns good to about 1e-6 of the period. Never throws.
+ */
+export function shareBelow(cycle: LimitCycle, species: SpeciesKey, level: number): number {
+  let below = 0;
+  for (let i = 1; i < cycle.points.length; i++) {
+    const p = cycle.points[i - 1]!;
+    const q = cycle.points[i]!;
+    const a = species === 'first' ? p.x : p.y;
+    const b = species === 'first' ? q.x : q.y;
+    const length = q.t - p.t;
+    if (a < level && b < level) below += length;
+    else if (a < level !== b < level) {
+      const part = Math.log(level / a) / Math.log(b / a);
+      below += length * (a < level ? part : 1 - part);
+    }
+  }
+  return below / cycle.period;
+}
