@@ -5,7 +5,8 @@ import type { Context } from '../context';
 import { StudyShare } from '../db/models/StudyShare';
 import { withTransaction } from '../db/transaction';
 import { refusal } from '../errors';
-import { isUuid, openStudy } from '../studies/access';
+import { isUuid } from '../isUuid';
+import { openStudy } from '../studies/access';
 import { parseInput } from '../studies/parseInput';
 
 const Role = z.enum(studyRoles, { error: 'Choose contributor, reviewer or observer.' });

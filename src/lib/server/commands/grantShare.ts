@@ -11,6 +11,8 @@ export interface Grant {
   studyId: string;
   userId: string;
   role: StudyRole;
+  /** Who decided it, where that is not the actor: an invitation is accepted by the person it was sent to. */
+  sharedById?: string;
 }
 
 /**
@@ -26,7 +28,8 @@ export async function grantShare(context: Context, transaction: Transaction, gra
   if (held && REACH.indexOf(held.role) >= REACH.indexOf(role)) return;
   if (held) await held.update({ role }, { transaction });
   else {
-    await StudyShare.create({ studyId, userId, role, sharedById: context.actor?.userId ?? null }, { transaction });
+    const sharedById = grant.sharedById ?? context.actor?.userId ?? null;
+    await StudyShare.create({ studyId, userId, role, sharedById }, { transaction });
   }
   await recordAudit(context, transaction, {
     act: 'study.share',

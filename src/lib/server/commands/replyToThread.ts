@@ -5,7 +5,8 @@ import { Comment } from '../db/models/Comment';
 import { Thread } from '../db/models/Thread';
 import { withTransaction } from '../db/transaction';
 import { refusal } from '../errors';
-import { isUuid, openStudy, requireOpen } from '../studies/access';
+import { isUuid } from '../isUuid';
+import { openStudy, requireOpen } from '../studies/access';
 import { parseInput } from '../studies/parseInput';
 
 /** Adds a comment to an open thread of the study. A resolved thread is opened again first (`resolveThread`). */

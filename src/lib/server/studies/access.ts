@@ -6,9 +6,8 @@ import { Study } from '../db/models/Study';
 import { StudyRevision } from '../db/models/StudyRevision';
 import { StudyShare } from '../db/models/StudyShare';
 import { refusal } from '../errors';
+import { isUuid } from '../isUuid';
 import { abilitiesOf, authorize, requireActor, type StudyAct, type StudySubject } from '../policies/ability';
-
-const UUID = /^[0-9a-f]{8}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{12}$/i;
 
 export interface OpenStudy {
   study: Study;
@@ -25,11 +24,6 @@ interface OpenOptions {
   deleted?: boolean;
   /** Who opened the thread in question, for `study.resolve`. */
   openerId?: string;
-}
-
-/** Whether a text can be the id of a row at all; anything else is simply not there. */
-export function isUuid(text: string): boolean {
-  return UUID.test(text);
 }
 
 /**
@@ -57,13 +51,14 @@ export async function openStudy(
     openerId: options.openerId ?? null
   };
   authorize(actor, act, subject);
-  const abilities = abilitiesOf(actor, subject);
-  return { study, actor, subject, abilities: study.state === 'archived' ? abilities.filter(whileArchived) : abilities };
+  return { study, actor, subject, abilities: abilitiesNow(abilitiesOf(actor, subject), study.state) };
 }
 
-/** An archived study is read, copied, exported and restored, but not changed. */
-function whileArchived(act: StudyAct): boolean {
-  return !['study.edit', 'study.comment', 'study.resolve', 'study.archive'].includes(act);
+const CHANGING: readonly StudyAct[] = ['study.edit', 'study.comment', 'study.resolve', 'study.archive'];
+
+/** The acts open now: an archived study is read, copied, exported and restored, but not changed. */
+export function abilitiesNow(abilities: readonly StudyAct[], state: Study['state']): StudyAct[] {
+  return abilities.filter((act) => (state === 'archived' ? !CHANGING.includes(act) : act !== 'study.restore'));
 }
 
 /** Throws 409 where the study is archived. Call after authorisation, so that an outsider learns nothing. */
@@ -83,7 +78,8 @@ export async function readRevision(
   number = study.revision,
   transaction?: Transaction
 ): Promise<StudyRevision> {
-  const found = await StudyRevision.findOne({ where: { studyId: study.id, number }, transaction });
+  const isNumber = Number.isInteger(number) && number > 0 && number <= study.revision;
+  const found = isNumber ? await StudyRevision.findOne({ where: { studyId: study.id, number }, transaction }) : null;
   if (!found) throw refusal('study.notFound', { message: `This study has no revision ${number}.` });
   return found;
 }

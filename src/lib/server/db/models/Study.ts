@@ -7,7 +7,7 @@ import {
   type Sequelize
 } from 'sequelize';
 import type { StudyQuestion } from '$lib/contracts/study';
-import type { PartState } from '$lib/study/parts';
+import type { PartState } from '$lib/study';
 import type { StudySketch } from '$lib/contracts/views';
 
 /**
