@@ -7,4 +7,6 @@ export { checkModel } from './model/check';
 export { integrate } from './solve/integrate';
 export * from './analysis/trajectory';
 export { coordinatesFor, formFor, netAdditionOf, type Form } from './analysis/coordinates';
+export { findEquilibria, type EquilibriaOptions } from './analysis/equilibria';
+export * from './analysis/limitCycles';
 export { ENGINE_VERSION } from './version';

@@ -91,6 +91,35 @@ describe('limitCycles', () => {
     expect(limitCycles(spec, unclassified)).toEqual([]);
   });
 
+  it('finds a ring that repels inside one that attracts, around an equilibrium that attracts', () => {
+    const [s, g, a, h] = [0.2, 3, 12.6, 0.743];
+    const spec: ConsumerResourceModel = {
+      interaction: 'consumer-resource',
+      first: { growth: { kind: 'logistic', r: 1, K: 1 } },
+      second: { growth: { kind: 'leslie', r: s, g } },
+      feeding: { response: 'holling-2', a, h, e: 0 }
+    };
+    // (1 - x)(1 + a h x) = a g x
+    const b = a * h - 1 - a * g;
+    const x = (b + Math.sqrt(b * b + 4 * a * h)) / (2 * a * h);
+    const report = reportAt(spec, [[x, g * x]]);
+    expect(report.equilibria[0]!.class).toBe('stable spiral');
+    const cycles = limitCycles(spec, report);
+    expect(cycles.map((c) => c.stability)).toEqual(['unstable', 'stable']);
+    const [inner, outer] = cycles;
+    const endsNear = (start: { x: number; y: number }): number => {
+      const path = simulate(spec, {
+        start,
+        span: [0, 8000],
+        times: Array.from({ length: 400 }, (_, i) => 7960 + i / 10)
+      });
+      return Math.max(...path.x);
+    };
+    const turn = inner!.points[0]!;
+    expect(endsNear({ x: x + 0.98 * (turn.x - x), y: turn.y }) / x).toBeCloseTo(1, 2);
+    expect(endsNear({ x: x + 1.02 * (turn.x - x), y: turn.y }) / outer!.xMax).toBeCloseTo(1, 3);
+  });
+
   it('averages as an even sampling of the turn does', () => {
     const spec = rosenzweig(0.07, 10, 1 / 750, 250, 15, 0.025);
     const [cycle] = limitCycles(spec, interior(spec));

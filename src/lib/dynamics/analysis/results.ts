@@ -14,12 +14,7 @@ export type EquilibriumClass =
   | 'non-hyperbolic';
 export type Stability = 'stable' | 'unstable' | 'neutral' | 'undetermined';
 export type DecidedBy =
-  | 'linearisation'
-  | 'conserved quantity'
-  | 'first Lyapunov coefficient'
-  | 'centre manifold'
-  | 'continuum'
-  | 'undecided';
+  'linearisation' | 'conserved quantity' | 'first Lyapunov coefficient' | 'centre manifold' | 'continuum' | 'undecided';
 
 export interface Complex {
   re: number;

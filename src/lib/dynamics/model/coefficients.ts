@@ -27,33 +27,43 @@ export interface Coefficients<T> {
   leslie: T;
 }
 
+/** a - b, an exact zero when the same number is written twice. */
+function difference<T>(ring: Ring<T>, a: number, b: number): T {
+  return a === b ? ring.zero : ring.sub(ring.of(a), ring.of(b));
+}
+
 function growthPerHead<T>(ring: Ring<T>, species: SpeciesSpec): [T, T, T] {
   const { growth } = species;
-  const effort = ring.of(species.removal?.effort ?? 0);
+  const effort = species.removal?.effort ?? 0;
   const r = ring.of(growth.r);
+  const own = difference(ring, growth.r, effort);
   switch (growth.kind) {
     case 'exponential':
-      return [ring.sub(r, effort), ring.zero, ring.zero];
+      return [own, ring.zero, ring.zero];
     case 'logistic':
-      return [ring.sub(r, effort), ring.neg(ring.div(r, ring.of(growth.K))), ring.zero];
+      return [own, ring.neg(ring.div(r, ring.of(growth.K))), ring.zero];
     case 'allee': {
       const rOverA = ring.div(r, ring.of(growth.A));
       const rOverK = ring.div(r, ring.of(growth.K));
-      return [ring.neg(ring.add(r, effort)), ring.add(rOverA, rOverK), ring.neg(ring.div(rOverA, ring.of(growth.K)))];
+      return [
+        ring.neg(ring.add(r, ring.of(effort))),
+        ring.add(rOverA, rOverK),
+        ring.neg(ring.div(rOverA, ring.of(growth.K)))
+      ];
     }
   }
 }
 
 function consumerPerHead<T>(ring: Ring<T>, consumer: ConsumerSpec): { q: [T, T, T]; leslie: T } {
-  const effort = ring.of(consumer.removal?.effort ?? 0);
+  const effort = consumer.removal?.effort ?? 0;
   const crowding = ring.of(consumer.selfLimitation ?? 0);
   const { growth } = consumer;
   if (growth === undefined) {
-    const death = ring.add(ring.of(consumer.mortality ?? 0), effort);
+    const death = ring.add(ring.of(consumer.mortality ?? 0), ring.of(effort));
     return { q: [ring.neg(death), ring.neg(crowding), ring.zero], leslie: ring.zero };
   }
   const r = ring.of(growth.r);
-  const own = ring.sub(r, effort);
+  const own = difference(ring, growth.r, effort);
   if (growth.kind === 'leslie') {
     return { q: [own, ring.neg(crowding), ring.zero], leslie: ring.div(r, ring.of(growth.g)) };
   }
@@ -62,7 +72,7 @@ function consumerPerHead<T>(ring: Ring<T>, consumer: ConsumerSpec): { q: [T, T, 
 }
 
 function netAddition<T>(ring: Ring<T>, species: SpeciesSpec | ConsumerSpec): T {
-  return ring.sub(ring.of(species.stocking ?? 0), ring.of(species.removal?.quota ?? 0));
+  return difference(ring, species.stocking ?? 0, species.removal?.quota ?? 0);
 }
 
 /** Loss per head per head of the rival: r alpha / K, or b. */

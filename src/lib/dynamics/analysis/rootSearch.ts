@@ -1,0 +1,341 @@
+import { coefficientsOf, type Coefficients } from '../model/coefficients';
+import type { ModelSpec } from '../model/spec';
+import { FRACTION, type Fraction } from '../numeric/fraction';
+import {
+  contains,
+  divide,
+  distanceToZero,
+  INTERVAL,
+  interval,
+  middle,
+  point,
+  signOf,
+  ZERO,
+  type Interval
+} from '../numeric/interval';
+import type { Polynomial } from '../numeric/polynomial';
+import { positiveRoots, rangeOf, type PositiveRoots, type RootPlace } from '../numeric/realRoots';
+import { certifyBox, polish, tidy, type CertifiedBox, type Lifted } from './certify';
+import { eliminate, firstAlone, secondAlone, type Elimination } from './elimination';
+
+/** An equilibrium before it is classified. */
+export interface FoundPoint {
+  x: number;
+  y: number;
+  multiplicity: number;
+  /** Encloses the point for every model within rounding; null when that could not be shown. */
+  box: CertifiedBox | null;
+}
+
+/** A curve of equilibria in the plane, u = top(t)/bottom(t), or a straight line where one abundance is fixed. */
+export interface FoundCurve {
+  along: 'first' | 'second';
+  at: (t: number) => number;
+  /** Where the curve may start, end or leave the quadrant, ascending. */
+  cuts: number[];
+}
+
+export interface Search {
+  points: FoundPoint[];
+  curves: FoundCurve[];
+  /** Reasons why the list may not be complete; empty when it is proven. */
+  doubts: string[];
+  /** Places where the number of roots rests on rounding but every one is listed. */
+  merged: boolean;
+}
+
+const exactly = (value: number): Interval => point(value);
+
+function reflect(a: Polynomial<Interval>): Polynomial<Interval> {
+  return a.map((c, i) => (i % 2 === 0 ? c : { lo: -c.hi, hi: -c.lo }));
+}
+
+function derivative(a: Polynomial<Interval>): Polynomial<Interval> {
+  return a.slice(1).map((c, i) => INTERVAL.mul(c, exactly(i + 1)));
+}
+
+const real = (a: Polynomial<Interval>, t: number) => {
+  let value = 0;
+  for (let i = a.length - 1; i >= 0; i--) value = value * t + middle(a[i]!);
+  return value;
+};
+
+/** Pins a knot down to where the derivative of one order less than its own vanishes: a well-posed question. */
+function pinKnot(a: Polynomial<Interval>, knot: RootPlace): RootPlace {
+  let d = a;
+  for (let i = 1; i < knot.atMost; i++) d = derivative(d);
+  const near = positiveRoots(d).places.filter(
+    (place) => place.single && place.value >= knot.lo * (1 - 1e-6) && place.value <= knot.hi * (1 + 1e-6)
+  );
+  const pinned = near[0];
+  return near.length === 1 && pinned ? { ...knot, value: pinned.value, lo: pinned.lo, hi: pinned.hi } : knot;
+}
+
+/** Mirrors a place found on the reflected polynomial. */
+function mirror(place: RootPlace): RootPlace {
+  return { ...place, value: -place.value, lo: -place.hi, hi: -place.lo };
+}
+
+interface SignedRoots extends PositiveRoots {
+  polynomial: Polynomial<Interval>;
+}
+
+function rootsOf(polynomial: Polynomial<Interval>, includeNegative: boolean): SignedRoots {
+  const positive = positiveRoots(polynomial);
+  const places = positive.places.map((place) => (place.single ? place : pinKnot(polynomial, place)));
+  if (includeNegative && !positive.vanishes) {
+    const mirrored = reflect(polynomial);
+    const negative = positiveRoots(mirrored).places.map((place) => (place.single ? place : pinKnot(mirrored, place)));
+    places.unshift(...negative.map(mirror).reverse());
+  }
+  return { ...positive, places, polynomial };
+}
+
+/**
+ * Replaces coefficients that are 0 within rounding by exact zeros where the decimal numbers of the document make them so.
+ */
+function settle(approximate: Polynomial<Interval>, exact: () => Polynomial<Fraction>): Polynomial<Interval> {
+  if (!approximate.some((c) => signOf(c) === null)) return approximate;
+  const coefficients = exact();
+  return approximate.map((c, i) => {
+    const known = coefficients[i];
+    return signOf(c) === null && (known === undefined || FRACTION.isZero(known)) ? ZERO : c;
+  });
+}
+
+/** Collects everything about one model. */
+class Collector implements Search {
+  points: FoundPoint[] = [];
+  curves: FoundCurve[] = [];
+  doubts: string[] = [];
+  merged = false;
+
+  constructor(
+    private readonly lifted: Lifted,
+    private readonly exact: () => Coefficients<Fraction>,
+    private readonly includeInfeasible: boolean
+  ) {}
+
+  private get k(): Coefficients<Interval> {
+    return this.lifted.interval;
+  }
+
+  private get takesFirstByHead() {
+    return INTERVAL.isZero(this.k.s1);
+  }
+
+  private get takesSecondByHead() {
+    return INTERVAL.isZero(this.k.s2);
+  }
+
+  private get undefinedAtZero() {
+    return !INTERVAL.isZero(this.k.leslie);
+  }
+
+  run(): void {
+    const { takesFirstByHead, takesSecondByHead, undefinedAtZero } = this;
+    if (takesFirstByHead && takesSecondByHead && !undefinedAtZero) {
+      this.points.push({ x: 0, y: 0, multiplicity: 1, box: { x: ZERO, y: ZERO } });
+    }
+    if (takesSecondByHead) {
+      const own = settle(firstAlone(INTERVAL, this.k), () => firstAlone(FRACTION, this.exact()));
+      this.alone('first', own);
+    }
+    if (takesFirstByHead && !undefinedAtZero) {
+      const own = settle(secondAlone(INTERVAL, this.k), () => secondAlone(FRACTION, this.exact()));
+      this.alone('second', own);
+    }
+    this.together();
+  }
+
+  /** Equilibria on one axis. */
+  private alone(along: 'first' | 'second', polynomial: Polynomial<Interval>): void {
+    const roots = rootsOf(polynomial, this.includeInfeasible);
+    if (roots.vanishes) {
+      this.curves.push({ along, at: () => 0, cuts: [] });
+      return;
+    }
+    for (const place of roots.places) {
+      const value = tidy(place.value, interval(place.lo, place.hi));
+      const range = interval(place.lo, place.hi);
+      const [x, y] = along === 'first' ? [value, 0] : [0, value];
+      const box = along === 'first' ? { x: range, y: ZERO } : { x: ZERO, y: range };
+      this.points.push({ x, y, multiplicity: place.atMost, box });
+      if (!place.single) this.merged = true;
+    }
+    if (roots.atZero > 0) this.mergeInto(0, 0, roots.atZero);
+    if (!roots.endsExact) this.doubts.push('an equilibrium at the edge of the number range cannot be excluded');
+  }
+
+  /** Counts roots that coincide with a point already listed. */
+  private mergeInto(x: number, y: number, count: number): void {
+    const near = (p: number, q: number) => Math.abs(p - q) <= 1e-6 * Math.max(Math.abs(p), Math.abs(q));
+    const host = this.points.find((point) => near(point.x, x) && near(point.y, y));
+    if (host) {
+      host.multiplicity += count;
+      this.merged = true;
+    } else if (!(x === 0 && this.undefinedAtZero)) {
+      const onCurve = this.curves.length > 0;
+      if (!onCurve) this.doubts.push('a merged equilibrium on an axis could not be placed');
+    }
+  }
+
+  /** Equilibria off the invariant axes. */
+  private together(): void {
+    const elimination = eliminate(INTERVAL, this.k);
+    if (elimination === null) return;
+    if (elimination.along === 'both') this.uncoupled(elimination.first, elimination.second);
+    else this.eliminated(elimination);
+  }
+
+  private uncoupled(first: Polynomial<Interval>, second: Polynomial<Interval>): void {
+    const xs = rootsOf(first, this.includeInfeasible);
+    const ys = rootsOf(second, this.includeInfeasible);
+    if (xs.vanishes || ys.vanishes) {
+      // One species rests anywhere: a line for each state of the other.
+      if (xs.vanishes)
+        ys.places.forEach((place) => this.curves.push({ along: 'first', at: () => place.value, cuts: [] }));
+      if (ys.vanishes)
+        xs.places.forEach((place) => this.curves.push({ along: 'second', at: () => place.value, cuts: [] }));
+      return;
+    }
+    for (const px of xs.places) {
+      for (const py of ys.places) {
+        const box = { x: interval(px.lo, px.hi), y: interval(py.lo, py.hi) };
+        const [x, y] = [tidy(px.value, box.x), tidy(py.value, box.y)];
+        this.points.push({ x, y, multiplicity: px.atMost * py.atMost, box });
+      }
+    }
+    if (xs.atZero > 0) ys.places.forEach((py) => this.mergeInto(0, py.value, xs.atZero));
+    if (ys.atZero > 0) xs.places.forEach((px) => this.mergeInto(px.value, 0, ys.atZero));
+    if (xs.atZero > 0 && ys.atZero > 0) this.mergeInto(0, 0, xs.atZero * ys.atZero);
+  }
+
+  private eliminated(elimination: Elimination<Interval>): void {
+    const { along, top, bottom } = elimination;
+    const resultant = settle(elimination.resultant, () => {
+      const exact = eliminate(FRACTION, this.exact());
+      return exact && exact.along !== 'both' ? exact.resultant : [];
+    });
+    const roots = rootsOf(resultant, this.includeInfeasible);
+    if (roots.vanishes) {
+      const cuts = [...rootsOf(top, false).places, ...rootsOf(bottom, false).places].map((place) => place.value);
+      this.curves.push({ along, at: (t) => real(top, t) / real(bottom, t), cuts: cuts.sort((p, q) => p - q) });
+      return;
+    }
+    for (const place of roots.places) {
+      if (place.single) this.singleRoot(elimination, place);
+      else this.knot(elimination, place);
+    }
+    if (roots.atZero > 0) this.rootAtZero(elimination, roots.atZero);
+    if (!roots.endsExact) this.doubts.push('an equilibrium at the edge of the number range cannot be excluded');
+  }
+
+  private place(along: 'first' | 'second', t: number, u: number): [number, number] {
+    return along === 'first' ? [t, u] : [u, t];
+  }
+
+  private certified(elimination: Elimination<Interval>, t: number): { x: number; y: number; box: CertifiedBox } | null {
+    const u = real(elimination.top, t) / real(elimination.bottom, t);
+    if (!Number.isFinite(u)) return null;
+    const polished = polish(this.lifted, ...this.place(elimination.along, t, u));
+    const box = polished && certifyBox(this.lifted, polished.x, polished.y);
+    return polished && box ? { ...polished, box } : null;
+  }
+
+  private singleRoot(elimination: Elimination<Interval>, place: RootPlace): void {
+    const { along, top, bottom } = elimination;
+    const found = this.certified(elimination, place.value);
+    const range = found && (along === 'first' ? found.box.x : found.box.y);
+    if (found && range && range.lo <= place.hi && range.hi >= place.lo) {
+      this.accept(found.x, found.y, 1, found.box);
+      return;
+    }
+    // The box test can fail next to a fold; the one-dimensional proof still holds.
+    const t = interval(place.lo, place.hi);
+    const u = divide(rangeOf(top, t.lo, t.hi), rangeOf(bottom, t.lo, t.hi));
+    const box = along === 'first' ? { x: t, y: u } : { x: u, y: t };
+    const guess = real(top, place.value) / real(bottom, place.value);
+    const [x, y] = this.place(along, place.value, guess);
+    if (signOf(u) !== null) this.accept(x, y, 1, box);
+    else {
+      this.doubts.push('the side of an axis on which one equilibrium lies is below rounding');
+      if (guess >= 0) this.accept(x, y, 1, null);
+    }
+  }
+
+  /** A point off the axes in the algebra; it may still lie on one, or beyond. */
+  private accept(x: number, y: number, multiplicity: number, box: CertifiedBox | null): void {
+    if (box) {
+      const onFirstAxis = contains(box.y, 0) && this.takesSecondByHead;
+      const onSecondAxis = contains(box.x, 0) && this.takesFirstByHead;
+      if (onFirstAxis || onSecondAxis) {
+        this.mergeInto(onSecondAxis ? 0 : x, onFirstAxis ? 0 : y, multiplicity);
+        return;
+      }
+    }
+    const feasible = box ? box.x.hi >= 0 && box.y.hi >= 0 : x >= 0 && y >= 0;
+    if (!feasible && !this.includeInfeasible) return;
+    this.points.push({
+      x: box ? tidy(x, box.x) : x,
+      y: box ? tidy(y, box.y) : y,
+      multiplicity,
+      box
+    });
+  }
+
+  /** Several roots within rounding: told apart in the plane where possible, else listed once. */
+  private knot(elimination: Elimination<Interval>, place: RootPlace): void {
+    const { along, top, bottom } = elimination;
+    const spread = Math.max((place.hi - place.lo) / Math.abs(place.value), 2 ** -24);
+    const apart: { x: number; y: number; box: CertifiedBox }[] = [];
+    for (const step of [-64, -4, -1, -0.25, 0.25, 1, 4, 64]) {
+      const found = this.certified(elimination, place.value * (1 + step * spread));
+      if (!found) continue;
+      const t = along === 'first' ? found.x : found.y;
+      if (Math.abs(t / place.value - 1) > 1024 * spread) continue;
+      const isNew = apart.every((other) => disjoint(other.box, found.box));
+      if (isNew) apart.push(found);
+    }
+    if (apart.length > 1) {
+      apart.forEach((found) => this.accept(found.x, found.y, 1, found.box));
+      if (apart.length < place.atMost) this.doubts.push('more equilibria may be merged in one place');
+      return;
+    }
+    const t = interval(Math.min(place.lo, place.hi), Math.max(place.lo, place.hi));
+    const u = divide(rangeOf(top, t.lo, t.hi), rangeOf(bottom, t.lo, t.hi));
+    const [x, y] = this.place(along, place.value, real(top, place.value) / real(bottom, place.value));
+    const box = along === 'first' ? { x: t, y: u } : { x: u, y: t };
+    this.merged = true;
+    this.accept(x, y, place.atMost, Number.isFinite(u.lo) ? box : null);
+  }
+
+  /** A root t = 0 of the resultant is a point of the other axis counted again. */
+  private rootAtZero(elimination: Elimination<Interval>, count: number): void {
+    const { along, top, bottom } = elimination;
+    const invariant = along === 'first' ? this.takesFirstByHead : this.takesSecondByHead;
+    const [head, foot] = [top[0] ?? ZERO, bottom[0] ?? ZERO];
+    if (!invariant || distanceToZero(foot) === 0) return;
+    const u = divide(head, foot);
+    if (u.hi < 0) return;
+    this.mergeInto(...this.place(along, 0, contains(u, 0) ? 0 : middle(u)), count);
+  }
+}
+
+function disjoint(a: CertifiedBox, b: CertifiedBox): boolean {
+  return a.x.hi < b.x.lo || b.x.hi < a.x.lo || a.y.hi < b.y.lo || b.y.hi < a.y.lo;
+}
+
+/**
+ * Every equilibrium of a model, with a proof or the reasons why there is none.
+ * @param spec a sound model
+ * @param lifted coefficients of the model in the rings needed (see lift)
+ * @param includeInfeasible also real solutions with a negative abundance
+ * @returns points, curves and doubts. Never throws. Cost well under a millisecond, more next to folds.
+ */
+export function searchEquilibria(spec: ModelSpec, lifted: Lifted, includeInfeasible: boolean): Search {
+  const collector = new Collector(lifted, () => coefficientsOf(FRACTION, spec), includeInfeasible);
+  collector.run();
+  const { points, curves, doubts, merged } = collector;
+  return { points, curves, doubts: [...new Set(doubts)], merged };
+}
