@@ -72,7 +72,7 @@ export function formatNumber(value: number, significant?: number): string {
   if (!Number.isFinite(value)) return formatNotFinite(value);
   if (value === 0) return '0';
   const size = Math.abs(value);
-  const figures = significant ?? (size >= 999.5 ? 4 : 3);
+  const figures = significant ?? (size >= 1000 ? 4 : 3);
   if (size < 1e-4 || size >= 1e9) return scientific(value, figures);
   const rounded = roundTo(value, figures);
   const magnitude = Math.floor(Math.log10(Math.abs(rounded)));

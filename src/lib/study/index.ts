@@ -5,3 +5,7 @@ export * from './rateUnits';
 export * from './rates';
 export * from './resolve';
 export * from './assemble';
+export * from './echo';
+export * from './plausibility';
+export * from './assumptions';
+export * from './cautions';
