@@ -51,6 +51,10 @@ export const InviteMember = z.strictObject({
   email: Email,
   role: z.enum(WORKSPACE_ROLES, { error: 'Choose one of the four roles.' }).default('ecologist')
 });
+export const ChangeMemberRole = z.strictObject({ userId: z.string(), role: z.enum(WORKSPACE_ROLES) });
+export const RemoveMember = z.strictObject({ userId: z.string() });
+/** A row of a settings page that is to be taken back: an invitation, a token, a sign-in. */
+export const NamedRow = z.strictObject({ id: z.string() });
 export const AcceptInvitation = z.strictObject({ name: PersonName, password: NewPassword });
 
 export const MintToken = z.strictObject({
