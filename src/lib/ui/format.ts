@@ -29,7 +29,7 @@ const superscripts: Record<string, string> = {
 const raised = (exponent: number): string => [...String(exponent)].map((c) => superscripts[c] ?? c).join('');
 
 /**
- * A finite number with a fixed count of decimals, a true minus and commas from 10,000 up.
+ * A finite number with a fixed count of decimals, a true minus and commas between the thousands.
  * @param decimals places after the point; a negative count rounds to tens, hundreds …
  */
 export function formatNumber(value: number, decimals: number): string {
@@ -38,7 +38,7 @@ export function formatNumber(value: number, decimals: number): string {
   const rounded = decimals < 0 ? Math.round(value / step) * step : value;
   const fixed = Math.abs(rounded).toFixed(Math.max(0, Math.min(decimals, 20)));
   const [whole = '0', part] = fixed.split('.');
-  const grouped = whole.length > 4 ? whole.replace(/\B(?=(\d{3})+$)/g, ',') : whole;
+  const grouped = whole.replace(/\B(?=(\d{3})+$)/g, ',');
   const sign = value < 0 && /[1-9]/.test(fixed) ? '−' : '';
   return sign + grouped + (part ? `.${part}` : '');
 }
@@ -48,6 +48,8 @@ export function decimalsFor(size: number, figures = 2): number {
   const rounded = Number(Math.abs(size).toPrecision(figures));
   return figures - 1 - Math.floor(Math.log10(rounded));
 }
+
+const withoutTrailingZeros = (text: string): string => (text.includes('.') ? text.replace(/\.?0+$/, '') : text);
 
 /** Outside this span a number is set as mantissa and power of ten. */
 const plainFrom = 1e-4;
@@ -60,11 +62,10 @@ export function formatExact(value: number, figures = 4): string {
   const size = Math.abs(value);
   if (size < plainFrom || size >= plainTo) {
     const [mantissa = '0', exponent = '0'] = value.toExponential(Math.min(figures, 3) - 1).split('e');
-    return `${mantissa.replace('-', '−')} × 10${raised(Number(exponent))}`;
+    return `${withoutTrailingZeros(mantissa.replace('-', '−'))} × 10${raised(Number(exponent))}`;
   }
   const decimals = Math.max(0, decimalsFor(size, figures));
-  const shown = formatNumber(value, decimals);
-  return shown.includes('.') ? shown.replace(/\.?0+$/, '') : shown;
+  return withoutTrailingZeros(formatNumber(value, decimals));
 }
 
 /**
