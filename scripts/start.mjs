@@ -34,7 +34,7 @@ async function choosePort(host) {
 async function keepUp(server, isStopping) {
   const restarts = [];
   for (;;) {
-    await server.ended;
+    await server.whenEnded();
     if (isStopping()) return;
     const now = Date.now();
     restarts.push(now);
@@ -79,6 +79,8 @@ await runScript(async () => {
   });
 
   try {
+    // Refused before the long steps rather than after them.
+    if (process.env.PORT) await choosePort(host);
     await installPackages();
     await buildWhenStale();
     if (foreignUrl) {
@@ -91,7 +93,7 @@ await runScript(async () => {
           ? 'made and started'
           : 'started';
       say('Database', `${what}, on 127.0.0.1:${server.port}, kept in ${server.home}`);
-      if (!server.isBorrowed) keepUp(server, () => isStopping);
+      keepUp(server, () => isStopping);
     }
     const port = await choosePort(host);
     const shown = ['0.0.0.0', '::'].includes(host) ? 'localhost' : hostInUrl(host);

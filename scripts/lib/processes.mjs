@@ -71,11 +71,12 @@ export async function stopChild(child, signal, patienceMs) {
 }
 
 /** Runs a command to its end with everything it prints in `logFile`. @returns exit code and the text printed */
-export async function runLogged(command, args, { logFile, ...options }) {
+export async function runLogged(command, args, { logFile, env = process.env, ...options }) {
   mkdirSync(dirname(logFile), { recursive: true });
   const log = openSync(logFile, 'w');
   try {
-    const code = await ended(spawnTied(command, args, { stdio: ['ignore', log, log], ...options }));
+    const plain = { ...env, NO_COLOR: '1', FORCE_COLOR: '0' };
+    const code = await ended(spawnTied(command, args, { stdio: ['ignore', log, log], env: plain, ...options }));
     return { code, output: readFileSync(logFile, 'utf8') };
   } finally {
     closeSync(log);
