@@ -111,6 +111,7 @@ describe('limitCycles', () => {
       const path = simulate(spec, {
         start,
         span: [0, 8000],
+        rtol: 1e-6,
         times: Array.from({ length: 400 }, (_, i) => 7960 + i / 10)
       });
       return Math.max(...path.x);

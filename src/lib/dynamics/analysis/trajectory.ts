@@ -1,10 +1,10 @@
 /** One path of a model from one start, with the moments a manager asks about. */
 import { compile } from '../model/compile';
 import type { ModelSpec, SpeciesKey, System } from '../model/spec';
-import { integrate } from '../solve/integrate';
-import type { EventSpec, Outcome, Solution } from '../solve/problem';
+import type { Outcome } from '../solve/problem';
 import { ENGINE_VERSION } from '../version';
-import { coordinatesFor, formFor, netAdditionOf, type Coordinates, type Form } from './coordinates';
+import type { Coordinates } from './coordinates';
+import { followPath, levelOf, type Watched } from './path';
 
 export interface Threshold {
   species: SpeciesKey;
@@ -64,13 +64,6 @@ export interface TrajectoryResult {
 const STEP_SHARE = 1e-3;
 /** Rounding makes tighter steps pointless. */
 const TIGHTEST = 5e-14;
-const LARGEST = 1e300;
-/** A ceiling that follows the resource collapses with it; the last part of the way is the same to any accuracy asked. */
-const COLLAPSE = 1e-12;
-
-type Stop = 'first ran out' | 'second ran out' | 'overflow' | 'settled in';
-type Watched = { spec: EventSpec } & ({ stop: Stop } | { event: Omit<TrajectoryEvent, 't'> });
-
 /** Equally spaced times, both ends exact. @param count at least 2. */
 export function equallySpaced([t0, t1]: readonly [number, number], count: number): number[] {
   return Array.from({ length: count }, (_, i) => (i === count - 1 ? t1 : t0 + ((t1 - t0) * i) / (count - 1)));
@@ -89,45 +82,20 @@ function requireValid(options: TrajectoryOptions): void {
   }
 }
 
-/** Everything to watch for while the species have given forms. */
-function watchedIn(
-  c: Coordinates,
-  spec: ModelSpec,
-  options: TrajectoryOptions,
-  floor: number,
-  lift: number
-): Watched[] {
-  const list: Watched[] = [];
-  const read = (form: Form, i: number, level: number) => {
-    const target = form === 'log' ? Math.log(level) : level;
-    return (_: number, z: Float64Array): number => z[i]! - target;
-  };
-  const forwards = options.span[1] >= options.span[0];
-  for (const [i, species] of (['first', 'second'] as const).entries()) {
-    const form = c.forms[i]!;
-    if (form === 'zero') continue;
-    list.push({ spec: { value: read(form, i, LARGEST), direction: 1, terminal: true }, stop: 'overflow' });
-    if (form === 'plain' && netAdditionOf(spec, species) < 0 && forwards) {
-      const value = read(form, i, i === 0 ? floor : 0);
-      list.push({ spec: { value, direction: -1, terminal: true }, stop: i === 0 ? 'first ran out' : 'second ran out' });
-    }
-    if (form === 'plain' && netAdditionOf(spec, species) > 0) {
-      const value = read(form, i, lift * netAdditionOf(spec, species));
-      list.push({ spec: { value, direction: 1, terminal: true }, stop: 'settled in' });
-    }
-    for (const threshold of options.thresholds ?? []) {
-      if (threshold.species !== species) continue;
-      if (threshold.below !== undefined && threshold.below > 0) {
-        const event = { species, kind: 'fell below', value: threshold.below } as const;
-        list.push({ spec: { value: read(form, i, threshold.below), direction: -1, terminal: false }, event });
-      }
-      if (threshold.above !== undefined && threshold.above > 0) {
-        const event = { species, kind: 'rose above', value: threshold.above } as const;
-        list.push({ spec: { value: read(form, i, threshold.above), direction: 1, terminal: false }, event });
-      }
-    }
-  }
-  return list;
+/** The thresholds as events in given coordinates. */
+function thresholdsIn(c: Coordinates, thresholds: readonly Threshold[]): Watched<Omit<TrajectoryEvent, 't'>>[] {
+  return thresholds.flatMap(({ species, below, above }) => {
+    const i = species === 'first' ? 0 : 1;
+    if (c.forms[i] === 'zero') return [];
+    const list: Watched<Omit<TrajectoryEvent, 't'>>[] = [];
+    const watch = (level: number, direction: -1 | 1, kind: TrajectoryEventKind): void => {
+      const value = levelOf(c, i, level);
+      list.push({ spec: { value, direction, terminal: false }, tag: { species, kind, value: level } });
+    };
+    if (below !== undefined && below > 0) watch(below, -1, 'fell below');
+    if (above !== undefined && above > 0) watch(above, 1, 'rose above');
+    return list;
+  });
 }
 
 /** A start that stands exactly on a threshold and leaves it at once has crossed it at the first moment. */
@@ -176,104 +144,53 @@ function remarkOn(outcome: Outcome, stiff: boolean): string | null {
 export function simulate(spec: ModelSpec, options: TrajectoryOptions): TrajectoryResult {
   requireValid(options);
   const system = compile(spec);
-  const [t0, t1] = options.span;
-  const times = Float64Array.from(options.times ?? equallySpaced(options.span, options.samples ?? 201));
-  const rtol = Math.max(TIGHTEST, (options.rtol ?? 1e-8) * STEP_SHARE);
-  const atol = (options.atol ?? 1e-10) * STEP_SHARE;
-  const followsResource =
-    spec.interaction === 'consumer-resource' &&
-    spec.second.growth?.kind === 'leslie' &&
-    netAdditionOf(spec, 'first') < 0;
-  const floor = followsResource ? COLLAPSE * options.start.x : 0;
-  const lift = Math.abs(t1 - t0) * 1e-3;
-
-  const result: TrajectoryResult = {
-    t: [],
-    x: [],
-    y: [],
-    events: crossingsAtStart(system, options),
-    steps: { accepted: 0, rejected: 0, evaluations: 0 },
-    outcome: { status: 'reached' },
-    remark: null,
-    stiff: false,
+  const { start, span, thresholds = [] } = options;
+  const t: number[] = [];
+  const x: number[] = [];
+  const y: number[] = [];
+  const path = followPath(system, {
+    start,
+    span,
+    rtol: Math.max(TIGHTEST, (options.rtol ?? 1e-8) * STEP_SHARE),
+    atol: (options.atol ?? 1e-10) * STEP_SHARE,
+    times: Float64Array.from(options.times ?? equallySpaced(span, options.samples ?? 201)),
+    maxSteps: options.maxSteps ?? 200_000,
+    shouldStop: options.shouldStop,
+    watch: (c) => thresholdsIn(c, thresholds),
+    onPiece(solution, c) {
+      solution.t.forEach((time, i) => {
+        const z = solution.y.subarray(2 * i, 2 * i + 2);
+        t.push(time);
+        // The start is given back as it came, without a trip through the logarithm.
+        x.push(time === span[0] ? start.x : c.x(z));
+        y.push(time === span[0] ? start.y : c.y(z));
+      });
+    }
+  });
+  const events = crossingsAtStart(system, options);
+  for (const moment of path.moments) {
+    if (moment.kind === 'watched') {
+      events.push({ t: moment.t, ...moment.tag });
+      continue;
+    }
+    // A species that is gone in an instant passes every level on the way without being seen to.
+    for (const { species, below = 0 } of thresholds) {
+      if (species === moment.species && below > 0 && below < moment.from) {
+        events.push({ t: moment.t, species, kind: 'fell below', value: below });
+      }
+    }
+    events.push({ t: moment.t, species: moment.species, kind: 'ran out', value: 0 });
+  }
+  const outcome: Outcome = path.outcome.status === 'failed' ? path.outcome : { status: 'reached' };
+  return {
+    t,
+    x,
+    y,
+    events,
+    steps: path.steps,
+    outcome,
+    remark: remarkOn(outcome, path.stiff),
+    stiff: path.stiff,
     engine: ENGINE_VERSION
   };
-  let { x, y } = options.start;
-  let t = t0;
-  let forms: [Form, Form] = [formFor(x, netAdditionOf(spec, 'first')), formFor(y, netAdditionOf(spec, 'second'))];
-  let stepsLeft = options.maxSteps ?? 200_000;
-
-  for (;;) {
-    const c = coordinatesFor(system, forms);
-    const watched = watchedIn(c, spec, options, floor, lift);
-    const state = new Float64Array(2);
-    c.fromPlane(x, y, state);
-    const solution = integrate(
-      { rhs: c.rhs, jacobian: c.jacobian, y0: state, span: [t, t1], events: watched.map((w) => w.spec) },
-      {
-        ...c.tolerances(rtol, atol),
-        times: times.subarray(result.t.length),
-        maxSteps: stepsLeft,
-        ...(options.shouldStop && { shouldStop: options.shouldStop })
-      }
-    );
-    collect(result, solution, c, options);
-    stepsLeft -= solution.steps.accepted + solution.steps.rejected;
-    let stop: Stop | null = null;
-    for (const found of solution.events) {
-      const what = watched[found.event]!;
-      if ('event' in what) result.events.push({ t: found.t, ...what.event });
-      else stop = what.stop;
-    }
-    if (solution.outcome.status !== 'event') {
-      result.outcome = solution.outcome;
-      break;
-    }
-    t = solution.tEnd;
-    x = c.x(solution.yEnd);
-    y = c.y(solution.yEnd);
-    if (stop === 'overflow') {
-      result.outcome = { status: 'failed', reason: 'notFinite', t };
-      break;
-    }
-    if (stop === 'first ran out') {
-      result.events.push({ t, species: 'first', kind: 'ran out', value: 0 });
-      if (followsResource && y > 0) {
-        // The consumer's ceiling is a multiple of nothing: it is gone in the same instant.
-        for (const { species, below } of options.thresholds ?? []) {
-          if (species === 'second' && below !== undefined && below < y) {
-            result.events.push({ t, species, kind: 'fell below', value: below });
-          }
-        }
-        result.events.push({ t, species: 'second', kind: 'ran out', value: 0 });
-        y = 0;
-        forms = ['zero', formFor(0, netAdditionOf(spec, 'second'))];
-      } else forms = ['zero', forms[1]];
-      x = 0;
-    } else if (stop === 'second ran out') {
-      result.events.push({ t, species: 'second', kind: 'ran out', value: 0 });
-      forms = [forms[0], 'zero'];
-      y = 0;
-    } else {
-      forms = [formFor(x, netAdditionOf(spec, 'first')), formFor(y, netAdditionOf(spec, 'second'))];
-    }
-  }
-  result.remark = remarkOn(result.outcome, result.stiff);
-  return result;
-}
-
-function collect(result: TrajectoryResult, solution: Solution, c: Coordinates, options: TrajectoryOptions): void {
-  for (let i = 0; i < solution.t.length; i++) {
-    const t = solution.t[i]!;
-    const z = solution.y.subarray(2 * i, 2 * i + 2);
-    const atStart = t === options.span[0];
-    result.t.push(t);
-    // The start is given back as it came, without a trip through the logarithm.
-    result.x.push(atStart ? options.start.x : c.x(z));
-    result.y.push(atStart ? options.start.y : c.y(z));
-  }
-  result.steps.accepted += solution.steps.accepted;
-  result.steps.rejected += solution.steps.rejected;
-  result.steps.evaluations += solution.steps.evaluations;
-  result.stiff ||= solution.stiff;
 }
