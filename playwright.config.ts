@@ -3,7 +3,7 @@ import { defineConfig } from '@playwright/test';
 
 const port = Number(process.env.E2E_PORT ?? 4199);
 const origin = `http://127.0.0.1:${port}`;
-const chromium = process.env.CHROMIUM_PATH ?? '/usr/bin/chromium';
+const chromium = process.env.CHROMIUM_PATH || '/usr/bin/chromium';
 
 export default defineConfig({
   testDir: 'tests/e2e',

@@ -11,7 +11,7 @@ await runScript(async () => {
   await installPackages();
   const foreignUrl = process.env.DATABASE_URL;
   const server = foreignUrl ? undefined : await startPostgres();
-  const databaseUrl = foreignUrl ?? server.url;
+  const databaseUrl = foreignUrl || server.url;
   const port = process.env.PORT || '5173';
   const origin = process.env.ORIGIN || `http://localhost:${port}`;
   say('Database', foreignUrl ? 'the one of DATABASE_URL' : `on 127.0.0.1:${server.port}`);

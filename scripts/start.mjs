@@ -98,7 +98,7 @@ await runScript(async () => {
     const port = await choosePort(host);
     const shown = ['0.0.0.0', '::'].includes(host) ? 'localhost' : hostInUrl(host);
     const origin = process.env.ORIGIN || `http://${shown}:${port}`;
-    const databaseUrl = foreignUrl ?? server.url;
+    const databaseUrl = foreignUrl || server.url;
     say(
       'Server',
       hasDemo ? 'starting: tables brought up to date, demo made once' : 'starting: tables brought up to date'

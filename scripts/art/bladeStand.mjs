@@ -120,7 +120,7 @@ writeFileSync(
   `// Written by scripts/art/bladeStand.mjs.
 /** The cycle in the box 0 0 ${width} ${height}, with arrow heads and the rest point that does not hold. */
 export const bladeStand = {
-  cycle: 'M${ring.map(point).join('L')}Z',
+  cycle: 'M${ring.map(fine).join('L')}Z',
   marks: ${JSON.stringify(marks)},
   rest: ${JSON.stringify(paper([restN, restP]).map(Math.round))}
 } as const;

@@ -2,6 +2,7 @@
 import { chmodSync, existsSync, mkdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
+import { parseEnv } from 'node:util';
 import { identityOf, isRunning } from './processes.mjs';
 
 export const root = dirname(dirname(dirname(fileURLToPath(import.meta.url))));
@@ -15,10 +16,13 @@ export const demo = {
   password: 'reed-and-water-2026'
 };
 
-/** Reads `.env` when there is one; what is set in the environment wins. */
+/** Reads `.env` when there is one; what is set in the environment wins, and an empty line means "not set". */
 export function loadEnvironment() {
   const file = join(root, '.env');
-  if (existsSync(file)) process.loadEnvFile(file);
+  if (!existsSync(file)) return;
+  for (const [name, value] of Object.entries(parseEnv(readFileSync(file, 'utf8')))) {
+    if (value !== '') process.env[name] ??= value;
+  }
 }
 
 const runFile = join(stateFolder, 'run.json');
