@@ -1,0 +1,59 @@
+import { fail, redirect, type RequestEvent } from '@sveltejs/kit';
+import type { Context } from '$lib/server/context';
+import { AppError } from '$lib/server/errors';
+import { recordReading } from '$lib/server/commands/recordReading';
+import { saveRunSettings } from '$lib/server/commands/saveRunSettings';
+import { saveStarts } from '$lib/server/commands/saveStarts';
+import { asAction } from '$lib/server/kit/asAction';
+import { asLoad } from '$lib/server/kit/asLoad';
+import { studyTrajectories } from '$lib/server/queries/studyTrajectories';
+import { readRun, readStarts, runField, typedRun, typedStarts, type TypedErrors } from '$lib/study/runForm';
+import type { Actions, PageServerLoad } from './$types';
+
+export const load: PageServerLoad = asLoad(async (event, context) => ({
+  view: await studyTrajectories(context, event.params.studyId)
+}));
+
+/** The complaints of a refusal by field, where it has any; anything else goes on. */
+function complaints(thrown: unknown, fieldOf: (path: string) => string = (p) => p): TypedErrors {
+  if (!(thrown instanceof AppError) || thrown.issues.length === 0) throw thrown;
+  return Object.fromEntries(thrown.issues.map((issue) => [fieldOf(issue.path), issue.message]));
+}
+const revisionOf = (data: FormData) => Number(data.get('revision'));
+
+export const actions: Actions = {
+  starts: asAction(async (event: RequestEvent, context: Context) => {
+    const data = await event.request.formData();
+    const rows = typedStarts(data);
+    const { starts, errors } = readStarts(rows);
+    if (Object.keys(errors).length > 0) return fail(422, { rows, errors });
+    const studyId = String(event.params.studyId);
+    try {
+      await saveStarts(context, { studyId, revision: revisionOf(data), starts });
+    } catch (thrown) {
+      return fail(422, { rows, errors: complaints(thrown) });
+    }
+    redirect(303, `/studies/${studyId}/trajectories`);
+  }),
+  run: asAction(async (event: RequestEvent, context: Context) => {
+    const data = await event.request.formData();
+    const typed = typedRun(data);
+    const { run, errors } = readRun(typed);
+    if (Object.keys(errors).length > 0) return fail(422, { typed, errors });
+    const studyId = String(event.params.studyId);
+    try {
+      await saveRunSettings(context, { studyId, revision: revisionOf(data), run });
+    } catch (thrown) {
+      return fail(422, { typed, errors: complaints(thrown, (path) => runField(path, run)) });
+    }
+    redirect(303, `/studies/${studyId}/trajectories`);
+  }),
+  keep: asAction(async (event: RequestEvent, context: Context) => {
+    const data = await event.request.formData();
+    await recordReading(context, {
+      studyId: String(event.params.studyId),
+      part: 'trajectories',
+      sentence: String(data.get('sentence') ?? '')
+    });
+  })
+};
