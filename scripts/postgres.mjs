@@ -102,7 +102,7 @@ async function launch({ programs, home, data, user, ephemeral }, port) {
     Object.assign(settings, { fsync: 'off', synchronous_commit: 'off', full_page_writes: 'off', max_connections: 200 });
   const args = ['-D', data, ...Object.entries(settings).flatMap(([name, value]) => ['-c', `${name}=${value}`])];
   rmSync(join(data, 'postmaster.pid'), { force: true });
-  const log = openSync(logFile, 'a');
+  const log = openSync(logFile, 'a', 0o600);
   const child = spawnTied(join(programs, 'postgres'), args, {
     ...user,
     cwd: '/',

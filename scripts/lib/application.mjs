@@ -33,7 +33,7 @@ export const hostInUrl = (host) => (host.includes(':') ? `[${host}]` : host);
 export async function startApplication({ host, port, databaseUrl, origin, environment = {}, logName = 'server' }) {
   mkdirSync(logFolder, { recursive: true });
   const logFile = join(logFolder, `${logName}.log`);
-  const log = openSync(logFile, 'w');
+  const log = openSync(logFile, 'w', 0o600);
   const child = spawnTied(process.execPath, [join(root, 'build', 'index.js')], {
     cwd: root,
     stdio: ['ignore', log, log],

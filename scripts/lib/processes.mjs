@@ -73,7 +73,7 @@ export async function stopChild(child, signal, patienceMs) {
 /** Runs a command to its end with everything it prints in `logFile`. @returns exit code and the text printed */
 export async function runLogged(command, args, { logFile, env = process.env, ...options }) {
   mkdirSync(dirname(logFile), { recursive: true });
-  const log = openSync(logFile, 'w');
+  const log = openSync(logFile, 'w', 0o600);
   try {
     const plain = { ...env, NO_COLOR: '1', FORCE_COLOR: '0' };
     const code = await ended(spawnTied(command, args, { stdio: ['ignore', log, log], env: plain, ...options }));
