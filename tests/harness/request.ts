@@ -130,7 +130,7 @@ export async function request(path: string, asked: Asked = {}): Promise<Response
   const state = {
     tracing: { record_span: ({ fn }: { fn: (span: unknown) => unknown }) => fn({}), tracing: false }
   };
-  const response = (await with_request_store({ event, state } as never, () =>
+  const response = (await with_request_store({ event, state }, () =>
     handle({ event, resolve: resolve as never })
   )) as Response;
   const answered = new Response(response.body, response);

@@ -55,4 +55,5 @@ export function registerModels(sequelize: Sequelize): void {
   Thread.belongsTo(User, { as: 'resolvedBy', foreignKey: 'resolvedById' });
   Thread.hasMany(Comment, { as: 'comments', foreignKey: 'threadId' });
   Comment.belongsTo(User, { as: 'author', foreignKey: 'authorId' });
+  Comment.belongsTo(Thread, { as: 'thread', foreignKey: 'threadId' });
 }

@@ -16,12 +16,18 @@ export function presentStudyList(view: StudyListView): z.input<typeof StudyListA
 
 /** One study as the API gives it. */
 export function presentStudy(view: StudyOverviewView): z.input<typeof StudyAnswer> {
-  const { id, state, owner, revision, question, content, verdict, abilities } = view;
+  const { id, state, owner, question, content, verdict, abilities } = view;
   return {
     id,
     state,
     owner,
-    revision,
+    revision: {
+      number: view.revision,
+      fingerprint: view.fingerprint,
+      savedAt: view.savedAt,
+      author: view.savedBy,
+      summary: view.summary
+    },
     question,
     content,
     verdict: { kind: verdict.kind, consequence: verdict.consequence, sentence: verdict.plain },

@@ -1,7 +1,6 @@
 import { QueryTypes } from 'sequelize';
 import { StudyListQuery, type StudyQuestion, type StudyRole } from '$lib/contracts/study';
-import type { PersonName, StudySketch } from '$lib/contracts/views';
-import type { PartState } from '$lib/study';
+import type { PartView, PersonName, StudySketch } from '$lib/contracts/views';
 import type { Context } from '../context';
 import { sequelize } from '../db/connection';
 import { abilitiesOf, can, readableStudies, requireActor, type StudyAct } from '../policies/ability';
@@ -17,7 +16,7 @@ export interface StudyListRow {
   species: { first: { common: string; scientific: string }; second: { common: string; scientific: string } };
   state: 'open' | 'archived';
   verdict: { kind: string; consequence: string; sentence: string };
-  parts: PartState[];
+  parts: PartView[];
   sketch: StudySketch | null;
   owner: PersonName;
   revision: number;
@@ -64,7 +63,7 @@ interface Found {
   verdictKind: string;
   verdictConsequence: string;
   verdictSentence: string;
-  partStates: PartState[];
+  partStates: PartView[];
   sketch: StudySketch | null;
   ownerId: string;
   ownerName: string;

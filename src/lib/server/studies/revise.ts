@@ -23,7 +23,7 @@ export interface Text {
 
 export interface Edit {
   studyId: string;
-  /** The revision the screen was drawn from. */
+  /** The revision the screen was drawn from, as a number or as a form posts it. */
   revision: unknown;
   /** Makes the new text out of the present one, or throws 422. Runs after authorisation. */
   change(current: Text, study: Study): Text | Promise<Text>;
@@ -42,8 +42,12 @@ export async function revise(context: Context, edit: Edit): Promise<Saved> {
   const { study, actor } = await openStudy(context, edit.studyId, 'study.edit');
   requireOpen(study);
   const base = await readRevision(study);
-  if (!Number.isInteger(edit.revision)) throw invalid('revision', 'Say which revision this change was made from.');
-  if (edit.revision !== base.number) throw await overtaken(study, base, Number(edit.revision));
+  const from =
+    typeof edit.revision === 'string' && /^\d{1,9}$/.test(edit.revision) ? Number(edit.revision) : edit.revision;
+  if (typeof from !== 'number' || !Number.isInteger(from) || from < 1 || from > base.number) {
+    throw invalid('revision', 'Say which revision this change was made from.');
+  }
+  if (from !== base.number) throw await overtaken(study, base, from);
 
   const next = await edit.change({ question: base.question, content: base.content }, study);
   const question = parseInput(StudyQuestion, next.question, 'question');

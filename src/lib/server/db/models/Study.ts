@@ -7,8 +7,7 @@ import {
   type Sequelize
 } from 'sequelize';
 import type { StudyQuestion } from '$lib/contracts/study';
-import type { PartState } from '$lib/study';
-import type { StudySketch } from '$lib/contracts/views';
+import type { PartView, StudySketch } from '$lib/contracts/views';
 
 /**
  * One study as its list row: who owns it, where it stands, and what its latest revision says, restated so that the list
@@ -32,7 +31,7 @@ export class Study extends Model<InferAttributes<Study>, InferCreationAttributes
   declare verdictKind: string;
   declare verdictConsequence: string;
   declare verdictSentence: string;
-  declare partStates: PartState[];
+  declare partStates: PartView[];
   declare sketch: CreationOptional<StudySketch | null>;
   /** Lower-case words that the list searches. */
   declare searchText: string;
