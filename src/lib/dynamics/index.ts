@@ -9,4 +9,6 @@ export * from './analysis/trajectory';
 export { coordinatesFor, formFor, netAdditionOf, type Form } from './analysis/coordinates';
 export { findEquilibria, type EquilibriaOptions } from './analysis/equilibria';
 export * from './analysis/limitCycles';
+export * from './analysis/separatrices';
+export * from './analysis/outcome';
 export { ENGINE_VERSION } from './version';

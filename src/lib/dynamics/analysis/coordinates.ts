@@ -90,8 +90,10 @@ export function coordinatesFor(system: System, forms: Forms): Coordinates {
     x,
     y,
     tolerances(rtol, atol) {
+      // A trace that grows with |ln n| lets a species whose fate no longer matters, ln n = -10^6 and falling fast, go.
+      const slack = Math.max(rtol * 1e-3, 4 * Number.EPSILON);
       return {
-        rtol: [f1 === 'log' ? 0 : rtol, f2 === 'log' ? 0 : rtol],
+        rtol: [f1 === 'log' ? slack : rtol, f2 === 'log' ? slack : rtol],
         atol: [f1 === 'log' ? rtol : atol, f2 === 'log' ? rtol : atol]
       };
     }

@@ -45,7 +45,44 @@ const NONE: FoundEvent[] = [];
 export function makeEventTracker(events: readonly EventSpec[], n: number): EventTracker {
   const state = new Float64Array(n);
   const states = THETAS.map(() => new Float64Array(n));
+  const samples = new Float64Array(THETAS.length + 1);
   const watches: Watch[] = events.map((spec, index) => ({ spec, index, side: 0, last: 0, pending: null }));
+
+  /** The crossings of one function inside the step whose samples have just been taken. */
+  const locate = (
+    watch: Watch,
+    t: number,
+    h: number,
+    interpolate: (theta: number, out: Float64Array) => void
+  ): FoundEvent[] => {
+    const value = (theta: number): number => {
+      interpolate(theta, state);
+      return watch.spec.value(t + theta * h, state);
+    };
+    const at = (theta: number): FoundEvent => {
+      const y = new Float64Array(n);
+      interpolate(theta, y);
+      return { event: watch.index, t: t + theta * h, y };
+    };
+    const thetas = [0, ...THETAS];
+    const values = Array.from(samples);
+    revealDips(thetas, values, value);
+    const found: FoundEvent[] = [];
+    for (let j = 1; j < thetas.length; j++) {
+      const sign = Math.sign(values[j]!);
+      if (sign === 0) {
+        if (watch.side !== 0 && watch.pending === null) watch.pending = at(thetas[j]!);
+        continue;
+      }
+      if (sign === -watch.side && (watch.spec.direction === 0 || watch.spec.direction === sign)) {
+        const [a, b] = [thetas[j - 1]!, thetas[j]!];
+        found.push(watch.pending ?? at(bracketedRoot(value, a, b, values[j - 1]!, values[j]!, THETA_TOLERANCE)));
+      }
+      if (sign === 1 || sign === -1) watch.side = sign;
+      watch.pending = null;
+    }
+    return found;
+  };
 
   return {
     begin(t, y) {
@@ -58,40 +95,14 @@ export function makeEventTracker(events: readonly EventSpec[], n: number): Event
     scan(t, h, interpolate) {
       for (let j = 0; j < THETAS.length; j++) interpolate(THETAS[j]!, states[j]!);
       let found = NONE;
-      for (const watch of watches) {
-        const value = (theta: number): number => {
-          interpolate(theta, state);
-          return watch.spec.value(t + theta * h, state);
-        };
-        const at = (theta: number): FoundEvent => {
-          const y = new Float64Array(n);
-          interpolate(theta, y);
-          return { event: watch.index, t: t + theta * h, y };
-        };
-        const thetas = [0];
-        const values = [watch.last];
-        for (let j = 0; j < THETAS.length; j++) {
-          thetas.push(THETAS[j]!);
-          values.push(watch.spec.value(t + THETAS[j]! * h, states[j]!));
-        }
-        watch.last = values[values.length - 1]!;
-        revealDips(thetas, values, value);
-        for (let j = 1; j < thetas.length; j++) {
-          const sign = Math.sign(values[j]!);
-          if (sign === 0) {
-            if (watch.side !== 0 && watch.pending === null) watch.pending = at(thetas[j]!);
-            continue;
-          }
-          if (sign === -watch.side && (watch.spec.direction === 0 || watch.spec.direction === sign)) {
-            const event =
-              watch.pending ??
-              at(bracketedRoot(value, thetas[j - 1]!, thetas[j]!, values[j - 1]!, values[j]!, THETA_TOLERANCE));
-            if (found === NONE) found = [];
-            found.push(event);
-          }
-          if (sign === 1 || sign === -1) watch.side = sign;
-          watch.pending = null;
-        }
+      for (let k = 0; k < watches.length; k++) {
+        const watch = watches[k]!;
+        samples[0] = watch.last;
+        for (let j = 0; j < THETAS.length; j++) samples[j + 1] = watch.spec.value(t + THETAS[j]! * h, states[j]!);
+        watch.last = samples[THETAS.length]!;
+        if (watch.pending === null && staysOnSide(samples, watch.side)) continue;
+        const here = locate(watch, t, h, interpolate);
+        if (here.length > 0) found = [...found, ...here];
       }
       if (found.length > 1) found.sort((p, q) => (h > 0 ? p.t - q.t : q.t - p.t) || p.event - q.event);
       const stop = found.findIndex((f) => events[f.event]?.terminal);
@@ -104,6 +115,16 @@ export function makeEventTracker(events: readonly EventSpec[], n: number): Event
       });
     }
   };
+}
+
+/** Nothing to look into: every sample is strictly on the side, and none is nearer to zero than both its neighbours. */
+function staysOnSide(samples: Float64Array, side: number): boolean {
+  for (let j = 0; j < samples.length; j++) {
+    const v = side * samples[j]!;
+    if (!(v > 0)) return false;
+    if (j > 0 && j < samples.length - 1 && v < side * samples[j - 1]! && v < side * samples[j + 1]!) return false;
+  }
+  return true;
 }
 
 /**
