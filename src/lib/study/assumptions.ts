@@ -18,7 +18,10 @@ function growthAssumptions(key: 'first' | 'second', structure: ModelStructure, n
   switch (structure[key].growth) {
     case 'exponential':
       return [
-        assumes(`${key}-unlimited`, `Nothing but the other species limits ${name}: alone, it grows without end.`)
+        assumes(
+          `${key}-unlimited`,
+          `Nothing but the other species limits ${name}: alone, the population grows without end.`
+        )
       ];
     case 'logistic':
       return [
@@ -31,7 +34,7 @@ function growthAssumptions(key: 'first' | 'second', structure: ModelStructure, n
       return [
         assumes(
           `${key}-allee`,
-          `Below A, ${name} shrinks even when alone; the level A is the same everywhere and always.`
+          `Below A, a population of ${name} shrinks even when alone; A is the same everywhere and always.`
         )
       ];
     case 'leslie':
@@ -43,7 +46,7 @@ function growthAssumptions(key: 'first' | 'second', structure: ModelStructure, n
       ];
     case 'mortality':
       return [
-        assumes('second-one-food', `${name} lives on this resource alone and dies at a constant rate without it.`)
+        assumes('second-one-food', `The only food of ${name} is this resource; without it they die at a constant rate.`)
       ];
   }
 }
@@ -88,7 +91,7 @@ function feedingAssumptions(structure: ModelStructure, names: { first: string; s
     list.push(
       assumes(
         'never-full',
-        `${names.second} is never full: twice as much ${names.first} is eaten where there is twice as much.`
+        `The appetite of ${names.second} has no end: where there is twice as much ${names.first}, twice as much is eaten.`
       )
     );
     if (structure.first.growth === 'exponential' && !structure.second.selfLimitation) {
@@ -103,22 +106,19 @@ function feedingAssumptions(structure: ModelStructure, names: { first: string; s
     list.push(
       assumes(
         'fills-up',
-        `${names.second} handles one ${names.first} at a time, at the same speed at every age and season.`
+        `Handling ${names.first} takes time, one piece after another, at the same speed at every age and season.`
       )
     );
   } else {
     list.push(
       assumes(
         'eats-little-when-scarce',
-        `${names.second} leaves ${names.first} almost alone when it is scarce, and turns to it as it grows common.`
+        `Feeding on ${names.first} almost stops where it is scarce, and picks up as it grows common.`
       )
     );
   }
   list.push(
-    assumes(
-      'eaten-becomes-young',
-      `What ${names.second} eats becomes new ${names.second} at once and at a constant exchange.`
-    )
+    assumes('eaten-becomes-young', `Food eaten becomes new ${names.second} at once and at a constant exchange.`)
   );
   if (interference && response !== 'holling-1') {
     list.push(

@@ -66,7 +66,7 @@ describe('echoOf', () => {
 
   it('weighs the harm of a competitor against the room there is', () => {
     expect(plain(echoOf('competition.alpha12', crayfish, crayfishContent()))).toBe(
-      'At its own capacity, saddleback crayfish takes up 165 % of the room of stream crayfish: more than there is.'
+      'At its own capacity, saddleback crayfish would take up 165 % of the room of stream crayfish: more than there is.'
     );
   });
 

@@ -154,12 +154,12 @@ function betweenEcho(path: RatePath, value: number, question: StudyQuestion, get
     const share = (value * level) / room;
     const judged = share > 1 ? 'more than there is' : share === 1 ? 'all there is' : 'the rest is left';
     return [
-      `At its own capacity, ${other.common} takes up ${formatPercent(share)} of the room of ${harmed.common}: ${judged}.`
+      `At its own capacity, ${other.common} would take up ${formatPercent(share)} of the room of ${harmed.common}: ${judged}.`
     ];
   }
   const loss = `${formatNumber(value * level)} ${displayUnit(`/${question.timeUnit}`).text}`;
   return [
-    `At ${formatNumber(level)} ${displayUnit(other.unit).text} of ${other.common}, ${harmed.common} loses ${loss} of its growth.`
+    `At ${formatNumber(level)} ${displayUnit(other.unit).text} of ${other.common}, ${harmed.common} would lose ${loss} of its growth.`
   ];
 }
 

@@ -9,3 +9,7 @@ export * from './echo';
 export * from './plausibility';
 export * from './assumptions';
 export * from './cautions';
+export * from './points';
+export * from './verdict';
+export * from './facts';
+export * from './parts';

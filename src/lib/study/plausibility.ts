@@ -187,7 +187,7 @@ function feedingWarnings(path: RatePath, { question, content, get, perYear }: Co
       found.push(
         warn(
           'consumer-cannot-persist',
-          `With all it can eat, ${names.consumer} gains e/h = ${formatNumber(e / h)} ${unit}, and loses ${formatNumber(m)} ${unit}: it can never persist on ${names.resource} alone.`
+          `With all the food there could be, the gain of ${names.consumer}, e/h = ${formatNumber(e / h)} ${unit}, is no more than the loss of ${formatNumber(m)} ${unit}: it can never persist on ${names.resource} alone.`
         )
       );
     } else {
@@ -199,7 +199,7 @@ function feedingWarnings(path: RatePath, { question, content, get, perYear }: Co
         found.push(
           warn(
             'consumer-starves-at-capacity',
-            `Even with ${names.resource} at its capacity, ${names.consumer} gains ${formatNumber(e * intake)} ${unit} and loses ${formatNumber(loss)} ${unit}: it will not persist.`
+            `Even with ${names.resource} at its capacity, the gain of ${names.consumer}, ${formatNumber(e * intake)} ${unit}, is no more than the loss of ${formatNumber(loss)} ${unit}: it will not persist.`
           )
         );
       }
@@ -229,7 +229,7 @@ function managementWarnings(path: RatePath, value: number, { question, get }: Co
       return [
         warn(
           'take-above-growth',
-          `This fixed take is above the most that ${name} can replace, r·K/4 = ${words ?? formatNumber(most)} in a ${durationUnit(question)}: from any start it runs out unless stocked.`
+          `This fixed take is above the most that ${name} can replace, r·K/4 = ${words ?? formatNumber(most)} in a ${durationUnit(question)}: from any start there will be none left unless stocked.`
         )
       ];
     }
