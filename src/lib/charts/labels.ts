@@ -50,13 +50,27 @@ function rowOfDiscs(centre: Point, angle: number, width: number, height: number)
   });
 }
 
-function costOf(row: readonly Point[], r: number, box: Rect, obstacles: readonly Disc[]): number {
+/** Stops counting above `enough`: such a place is lost anyway. */
+function costOf(row: readonly Point[], r: number, box: Rect, obstacles: readonly Disc[], enough = Infinity): number {
+  const outside = row.filter((p) => !inside(p, box, r)).length;
+  if (outside > 0) return OUTSIDE * outside;
+  const first = row[0];
+  const last = row[row.length - 1];
+  if (!first || !last) return 0;
+  const [x0, x1] = [Math.min(first.x, last.x) - r, Math.max(first.x, last.x) + r];
+  const [y0, y1] = [Math.min(first.y, last.y) - r, Math.max(first.y, last.y) + r];
   let cost = 0;
-  for (const p of row) if (!inside(p, box, r)) cost += OUTSIDE;
   for (const o of obstacles) {
-    let nearest = Infinity;
-    for (const p of row) nearest = Math.min(nearest, Math.hypot(p.x - o.x, p.y - o.y) - o.r - r);
-    if (nearest < 0) cost += o.weight * Math.min(1, 0.3 - nearest / 6);
+    if (o.x + o.r < x0 || o.x - o.r > x1 || o.y + o.r < y0 || o.y - o.r > y1) continue;
+    let nearest2 = Infinity;
+    for (const p of row) {
+      const dx = p.x - o.x;
+      const dy = p.y - o.y;
+      nearest2 = Math.min(nearest2, dx * dx + dy * dy);
+    }
+    const gap = Math.sqrt(nearest2) - o.r - r;
+    if (gap < 0) cost += o.weight * Math.min(1, 0.3 - gap / 6);
+    if (cost > enough) return cost;
   }
   return cost;
 }
@@ -97,8 +111,11 @@ export function placeAlong(
   if (line.length < 12) return null;
   const width = textWidth(text, size);
   let best: PlacedLabel | null = null;
+  let lowest = Infinity;
   const consider = (label: PlacedLabel) => {
-    if (!best || label.cost < best.cost) best = label;
+    if (label.cost >= lowest) return;
+    best = label;
+    lowest = label.cost;
   };
   const n = Math.min(60, Math.max(8, Math.round(line.length / 7)));
   for (let i = 0; i <= n; i += 1) {
@@ -112,7 +129,8 @@ export function placeAlong(
     if (Math.abs(level) > STEEP) {
       for (const side of [1, -1]) {
         const centre = { x: here.x + side * (offset + width / 2), y: here.y };
-        const cost = costOf(rowOfDiscs(centre, 0, width, size), size / 2, box, obstacles) + pull + (side < 0 ? 0.4 : 0);
+        const cost =
+          costOf(rowOfDiscs(centre, 0, width, size), size / 2, box, obstacles, lowest) + pull + (side < 0 ? 0.4 : 0);
         consider({
           x: here.x + side * offset,
           y: here.y + size * 0.34,
@@ -131,7 +149,7 @@ export function placeAlong(
       const away = side * (offset + Math.min(bend, 8));
       const centre = { x: here.x - away * Math.sin(level), y: here.y + away * Math.cos(level) };
       const cost =
-        costOf(rowOfDiscs(centre, level, width, size), size / 2, box, obstacles) +
+        costOf(rowOfDiscs(centre, level, width, size), size / 2, box, obstacles, lowest) +
         pull +
         bend * 0.5 +
         (side > 0 ? 0.4 : 0);

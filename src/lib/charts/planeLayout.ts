@@ -131,7 +131,7 @@ export function layOutPlane(data: PlaneData, width: number, height = planeHeight
   const box: Rect = { x0: left, y0: 26, x1: width - 13, y1: height - 46 };
   const X = linearScale(0, xMax, box.x0, box.x1);
   const Y = linearScale(0, yMax, box.y1, box.y0);
-  const xValues = niceTicks(0, xMax, Math.max(3, Math.round((box.x1 - box.x0) / 90)));
+  const xValues = niceTicks(0, xMax, Math.max(3, Math.round((box.x1 - box.x0) / 74)));
   const xText = tickFormat(xValues);
   const toPaper = (p: Point): Point => ({ x: X(p.x), y: Y(p.y) });
   const pieces = (points: Point[]) => clipLine(points.map(toPaper), box).map((piece) => simplify(piece));
@@ -243,7 +243,7 @@ export function layOutPlane(data: PlaneData, width: number, height = planeHeight
   for (const l of continua) along(l, l.label ?? 'resting points all along', 'ink', 0.5);
 
   const basins = (data.basins ?? []).map((basin) => {
-    const polygons = (basin.polygons ?? []).map((polygon) => polygon.map(toPaper));
+    const polygons = (basin.polygons ?? []).map((polygon) => simplify(polygon.map(toPaper)));
     const cells = (basin.cells ?? []).map((c): Rect => ({ x0: X(c.x0), y0: Y(c.y1), x1: X(c.x1), y1: Y(c.y0) }));
     const boxes = cells.map((c) =>
       linePath(

@@ -109,12 +109,16 @@ export function logTickFormat(value: number): string {
   return groupDigits(value.toFixed(decimalsOfStep(value)));
 }
 
-/** A value to `digits` significant figures without an exponent where that stays readable: "178", "0.0042", "1.2 × 10⁹". */
+/**
+ * A value to `digits` significant figures, without an exponent where that stays readable: "0.00420", "1.2 × 10⁹". Whole
+ * numbers are given whole, as a count is.
+ */
 export function formatValue(value: number, digits = 3): string {
   if (!Number.isFinite(value)) return value > 0 ? 'no limit' : 'not a number';
   if (value === 0) return '0';
   const size = Math.abs(value);
   if (size >= 1e7 || size < 1e-4) return formatPower(value, digits);
+  if (Number.isInteger(value)) return groupDigits(String(value));
   const decimals = Math.max(0, digits - 1 - Math.floor(Math.log10(size)));
   return groupDigits(value.toFixed(Math.min(decimals, 12)));
 }

@@ -81,10 +81,16 @@ export function endLabels(state: EndState, toY: (value: number) => number, low: 
   );
   return groups.map((g, i) => ({
     species: g.species,
-    text: several ? `${nameOf(state, g.species)} ${joinLabels(g.runs)}` : nameOf(state, g.species),
+    text: several ? `${nameOf(state, g.species)}${runsAtEnd(g.runs, state.narrow)}` : nameOf(state, g.species),
     y: g.y,
     labelY: places[i] ?? g.y
   }));
+}
+
+/** A long list would take the plot's room on a phone: there it is counted, and the starts still carry the numbers. */
+function runsAtEnd(runs: string[], narrow: boolean): string {
+  const list = joinLabels(runs);
+  return narrow && list.length > 6 ? `, ${runs.length} runs` : ` ${list}`;
 }
 
 function mark(ctx: CanvasRenderingContext2D, species: SpeciesKey, x: number, y: number, theme: ChartTheme, size = 1) {
