@@ -57,15 +57,21 @@ export const RemoveMember = z.strictObject({ userId: z.string() });
 export const NamedRow = z.strictObject({ id: z.string() });
 export const AcceptInvitation = z.strictObject({ name: PersonName, password: NewPassword });
 
+export const TOKEN_DAYS_MAX = 365;
+
 export const MintToken = z.strictObject({
   name: z.string().trim().min(1, 'Say what the token is for.').max(80, 'Use at most 80 characters.'),
   scope: z.enum(TOKEN_SCOPES, { error: 'Choose what the token may do.' }).default('read'),
+  // Text, so that the form shows again what was typed; whoever reads it takes its number.
   days: z
-    .number({ error: 'Type a number of days.' })
-    .int('Use whole days.')
-    .min(1, 'A token lasts at least 1 day.')
-    .max(365, 'A token lasts at most 365 days.')
-    .default(90)
+    .string()
+    .trim()
+    .regex(/^\d{1,4}$/, 'Type a whole number of days, such as 90.')
+    .refine(
+      (days) => Number(days) >= 1 && Number(days) <= TOKEN_DAYS_MAX,
+      `A token lasts from 1 to ${TOKEN_DAYS_MAX} days.`
+    )
+    .default('90')
 });
 
 export const ROLE_WORDS: Record<WorkspaceRole, string> = {

@@ -14,7 +14,7 @@ export const load: PageServerLoad = asLoad(async (_event, context) => ({
 
 export const actions: Actions = {
   mint: asFormAction(MintToken, async (form, _event, context) => {
-    const { secret } = await mintToken(context, form.data);
+    const { secret } = await mintToken(context, { ...form.data, days: Number(form.data.days) });
     return { form, secret };
   }),
   revoke: asAction(async ({ request }, context) => {
