@@ -85,9 +85,10 @@ function sectionThrough(spec: ModelSpec, system: System, point: Equilibrium): Se
   c.fromPlane(point.x, point.y, home);
   const level = home[1]!;
   // Only above the equilibrium's resource does the consumer increase there, so every rise through the line is a return.
-  const events: EventSpec[] = [{ value: (_, z) => z[1]! - level, direction: 1, terminal: true }];
+  const events: EventSpec[] = [{ value: (_, z) => z[1]! - level, direction: 1, terminal: true, betweenSteps: true }];
   for (const i of [0, 1]) {
-    if (c.forms[i] === 'plain') events.push({ value: (_, z) => z[i]!, direction: -1, terminal: true });
+    if (c.forms[i] === 'plain')
+      events.push({ value: (_, z) => z[i]!, direction: -1, terminal: true, betweenSteps: true });
   }
   const horizon = (LONGEST_TURN * 2 * Math.PI) / Math.sqrt(Math.abs(point.determinant));
   const start = (s: number): Float64Array => {

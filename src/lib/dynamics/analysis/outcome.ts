@@ -127,16 +127,18 @@ function followToEnd(setting: Setting, start: { x: number; y: number }, options:
 
   const watch = (c: Coordinates): Watched<Tag>[] => {
     const far = (_: number, z: Float64Array): number => Math.max(c.x(z) / (sizeX || 1), c.y(z) / (sizeY || 1)) - BEYOND;
-    const list: Watched<Tag>[] = [{ spec: { value: far, direction: 1, terminal: true }, tag: 'unbounded' }];
+    const list: Watched<Tag>[] = [
+      { spec: { value: far, direction: 1, terminal: true, betweenSteps: true }, tag: 'unbounded' }
+    ];
     for (const target of targets) {
       if (!fits(target, c.forms)) continue;
       const value = (_: number, z: Float64Array): number => gapTo(target, c.x(z), c.y(z), sizeX, sizeY);
-      list.push({ spec: { value, direction: -1, terminal: true }, tag: target });
+      list.push({ spec: { value, direction: -1, terminal: true, betweenSteps: true }, tag: target });
     }
     if (c.forms[0] === 'zero' || c.forms[1] === 'zero') return list;
     for (const gate of gates) {
       const value = (_: number, z: Float64Array): number => c.y(z) - gate.y;
-      list.push({ spec: { value, direction: 1, terminal: true }, tag: gate });
+      list.push({ spec: { value, direction: 1, terminal: true, betweenSteps: true }, tag: gate });
     }
     return list;
   };

@@ -79,14 +79,20 @@ export function followPath<T>(system: System, request: PathRequest<T>): Path<T> 
     for (const i of [0, 1] as const) {
       const form = c.forms[i];
       if (form === 'zero') continue;
-      list.push({ spec: { value: levelOf(c, i, LARGEST), direction: 1, terminal: true }, tag: 'overflow' });
+      list.push({
+        spec: { value: levelOf(c, i, LARGEST), direction: 1, terminal: true, betweenSteps: true },
+        tag: 'overflow'
+      });
       if (form !== 'plain') continue;
       if (net[i] < 0 && t1 >= t0) {
         const value = levelOf(c, i, i === 0 ? floor : 0);
-        list.push({ spec: { value, direction: -1, terminal: true }, tag: i === 0 ? 'ran out 0' : 'ran out 1' });
+        list.push({
+          spec: { value, direction: -1, terminal: true, betweenSteps: true },
+          tag: i === 0 ? 'ran out 0' : 'ran out 1'
+        });
       } else if (net[i] > 0) {
         const value = levelOf(c, i, SETTLED * Math.abs(t1 - t0) * net[i]);
-        list.push({ spec: { value, direction: 1, terminal: true }, tag: 'settled in' });
+        list.push({ spec: { value, direction: 1, terminal: true, betweenSteps: true }, tag: 'settled in' });
       }
     }
     return list;

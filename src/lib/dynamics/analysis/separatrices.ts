@@ -124,7 +124,7 @@ function trace(
   const events: EventSpec[] = [];
   const endings: Ending[] = [];
   const endWhen = (value: (x: number, y: number) => number, ending: Ending): void => {
-    events.push({ value: (_, z) => value(c.x(z), c.y(z)), direction: -1, terminal: true });
+    events.push({ value: (_, z) => value(c.x(z), c.y(z)), direction: -1, terminal: true, betweenSteps: true });
     endings.push(ending);
   };
   const gone: Ending = { ends: 'window', endsAt: null };

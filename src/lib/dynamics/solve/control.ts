@@ -53,6 +53,8 @@ export function errorNorm(error: Float64Array, from: Float64Array, to: Float64Ar
 const SAFETY = 0.9;
 const SHRINK_MOST = 0.2;
 const GROW_MOST = 10;
+/** Logarithm of the smallest error remembered, 1e-4: one lucky step must not hold the next ones back. */
+const LOG_LEAST = Math.log(1e-4);
 
 /** Proportional–integral control; remembers the error of the last accepted step. */
 export interface StepControl {
@@ -68,13 +70,15 @@ export interface StepControl {
  * @source gustafsson1991; hairer1996 §IV.2 (2.43)
  */
 export function makeStepControl(proportional = 0.17, integral = 0.04): StepControl {
-  let last = 1e-4;
+  let logLast = LOG_LEAST;
   let rejected = false;
   return {
     afterAccepted(error) {
-      const raw = (SAFETY * Math.pow(last, integral)) / Math.pow(Math.max(error, 1e-12), proportional);
+      // Two logarithms and an exponential cost half of two powers.
+      const log = Math.log(Math.max(error, 1e-12));
+      const raw = SAFETY * Math.exp(integral * logLast - proportional * log);
       const factor = Math.min(GROW_MOST, Math.max(SHRINK_MOST, raw));
-      last = Math.max(error, 1e-4);
+      logLast = Math.max(log, LOG_LEAST);
       const allowed = rejected ? Math.min(factor, 1) : factor;
       rejected = false;
       return allowed;

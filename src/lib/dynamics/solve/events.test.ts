@@ -62,6 +62,15 @@ describe('events', () => {
     expect(run([event((t) => t - 10, 1, true)]).outcome).toMatchObject({ status: 'event', t: 10 });
   });
 
+  it('may be looked at between steps only, and are located as well', () => {
+    const wave: EventSpec = { ...event((t) => Math.sin(t), -1), betweenSteps: true };
+    const found = run([wave], [0, 10], 0.5).events.map((e) => e.t);
+    expect(found).toHaveLength(2);
+    found.forEach((t, i) => expect(Math.abs(t - Math.PI * (2 * i + 1))).toBeLessThan(1e-10));
+    const stop: EventSpec = { ...event((t) => t - 7, 1, true), betweenSteps: true };
+    expect(run([stop]).tEnd).toBeCloseTo(7, 10);
+  });
+
   it('stop the integration when terminal, with nothing recorded beyond', () => {
     const s = integrate(
       { rhs: clock, y0: [0], span: [0, 10], events: [event((t) => t - 7), event((t) => t - Math.PI, 1, true)] },

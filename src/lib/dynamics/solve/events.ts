@@ -22,8 +22,17 @@ const GOLDEN = 0.381966011250105;
 
 export interface EventTracker {
   begin(t: number, y: Float64Array): void;
-  /** Events inside the step [t, t + h], in the order they happen, ending with the first terminal one. */
-  scan(t: number, h: number, interpolate: (theta: number, out: Float64Array) => void): FoundEvent[];
+  /**
+   * Events inside the step from t to (t + h, y1), in the order they happen, ending with the first terminal one.
+   * `prepare` readies `interpolate`; it is called only when the inside of the step matters.
+   */
+  scan(
+    t: number,
+    h: number,
+    y1: Float64Array,
+    interpolate: (theta: number, out: Float64Array) => void,
+    prepare: () => void
+  ): FoundEvent[];
   /** Functions that stand exactly at zero at the end of the integration, having come from a side. */
   finish(): FoundEvent[];
 }
@@ -40,17 +49,21 @@ interface Watch {
 }
 
 const NONE: FoundEvent[] = [];
+const ENDS = [0, 1] as const;
 
 /** Watches `events` from step to step. @param n number of components of the state. @source hairer1993 §II.6 */
 export function makeEventTracker(events: readonly EventSpec[], n: number): EventTracker {
   const state = new Float64Array(n);
   const states = THETAS.map(() => new Float64Array(n));
   const samples = new Float64Array(THETAS.length + 1);
+  const hasFine = events.some((e) => !e.betweenSteps);
   const watches: Watch[] = events.map((spec, index) => ({ spec, index, side: 0, last: 0, pending: null }));
 
   /** The crossings of one function inside the step whose samples have just been taken. */
   const locate = (
     watch: Watch,
+    nodes: readonly number[],
+    values: number[],
     t: number,
     h: number,
     interpolate: (theta: number, out: Float64Array) => void
@@ -64,8 +77,7 @@ export function makeEventTracker(events: readonly EventSpec[], n: number): Event
       interpolate(theta, y);
       return { event: watch.index, t: t + theta * h, y };
     };
-    const thetas = [0, ...THETAS];
-    const values = Array.from(samples);
+    const thetas = [...nodes];
     revealDips(thetas, values, value);
     const found: FoundEvent[] = [];
     for (let j = 1; j < thetas.length; j++) {
@@ -92,16 +104,31 @@ export function makeEventTracker(events: readonly EventSpec[], n: number): Event
         watch.pending = null;
       }
     },
-    scan(t, h, interpolate) {
-      for (let j = 0; j < THETAS.length; j++) interpolate(THETAS[j]!, states[j]!);
+    scan(t, h, y1, interpolate, prepare) {
       let found = NONE;
+      let isPrepared = false;
+      if (hasFine) {
+        prepare();
+        isPrepared = true;
+        for (let j = 0; j < THETAS.length; j++) interpolate(THETAS[j]!, states[j]!);
+      }
       for (let k = 0; k < watches.length; k++) {
         const watch = watches[k]!;
+        if (watch.spec.betweenSteps) {
+          const before = watch.last;
+          watch.last = watch.spec.value(t + h, y1);
+          if (watch.pending === null && watch.side * watch.last > 0) continue;
+          if (!isPrepared) prepare();
+          isPrepared = true;
+          const here = locate(watch, ENDS, [before, watch.last], t, h, interpolate);
+          if (here.length > 0) found = [...found, ...here];
+          continue;
+        }
         samples[0] = watch.last;
         for (let j = 0; j < THETAS.length; j++) samples[j + 1] = watch.spec.value(t + THETAS[j]! * h, states[j]!);
         watch.last = samples[THETAS.length]!;
         if (watch.pending === null && staysOnSide(samples, watch.side)) continue;
-        const here = locate(watch, t, h, interpolate);
+        const here = locate(watch, [0, ...THETAS], Array.from(samples), t, h, interpolate);
         if (here.length > 0) found = [...found, ...here];
       }
       if (found.length > 1) found.sort((p, q) => (h > 0 ? p.t - q.t : q.t - p.t) || p.event - q.event);

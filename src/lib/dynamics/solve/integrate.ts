@@ -67,6 +67,8 @@ export function integrate(problem: Problem, options: SolveOptions = {}): Solutio
   let t = t0;
   let outcome: Outcome | null = null;
 
+  let taken = 0;
+  const prepare = (): void => method.prepare(y, taken);
   const finish = (result: Outcome): Solution => ({
     outcome: result,
     ...recorder.result(),
@@ -111,9 +113,10 @@ export function integrate(problem: Problem, options: SolveOptions = {}): Solutio
     accepted += 1;
     unfinite = false;
     const tNext = isLast ? t1 : t + h;
-    if (tracker !== null || recorder.needs(tNext)) method.prepare(y, h);
+    taken = h;
+    if (recorder.needs(tNext)) method.prepare(y, h);
     if (tracker !== null) {
-      for (const event of tracker.scan(t, h, method.interpolate)) {
+      for (const event of tracker.scan(t, h, method.y1, method.interpolate, prepare)) {
         events.push(event);
         if (specs[event.event]!.terminal) outcome = { status: 'event', event: event.event, t: event.t };
       }

@@ -13,6 +13,8 @@ export interface EventSpec {
   direction: -1 | 0 | 1;
   /** Stop the integration there. */
   terminal: boolean;
+  /** Looked at only between steps: for what does not come back once crossed, and much cheaper. Default false. */
+  betweenSteps?: boolean;
 }
 
 export interface Problem {
