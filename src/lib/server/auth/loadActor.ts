@@ -11,21 +11,20 @@ export async function loadActor(
   scopes: Actor['scopes'] = ['read', 'write'],
   transaction?: Transaction
 ): Promise<Actor | null> {
-  const [user, memberships] = await Promise.all([
-    User.findByPk(userId, { attributes: ['id', 'name', 'email'], transaction }),
-    Membership.findAll({
-      where: { userId },
-      include: [{ model: Workspace, as: 'workspace', attributes: ['name'] }],
-      order: [['createdAt', 'ASC']],
-      transaction
-    })
-  ]);
+  const user = await User.findByPk(userId, {
+    attributes: ['id', 'name', 'email'],
+    include: [
+      { model: Membership, as: 'memberships', include: [{ model: Workspace, as: 'workspace', attributes: ['name'] }] }
+    ],
+    order: [[{ model: Membership, as: 'memberships' }, 'createdAt', 'ASC']],
+    transaction
+  });
   if (!user) return null;
   return {
     userId: user.id,
     name: user.name,
     email: user.email,
-    memberships: memberships.map(({ workspaceId, role, workspace }) => ({
+    memberships: (user.memberships ?? []).map(({ workspaceId, role, workspace }) => ({
       workspaceId,
       role,
       workspaceName: workspace?.name ?? ''

@@ -1,8 +1,7 @@
 import { seedPeople } from './seedPeople';
 import { seedStudies } from './seedStudies';
 
-/** Makes the demo, once: safe to repeat. */
+/** Makes the demo, people first, then their studies: as far as it is not there yet, so it is safe to repeat. */
 export async function seed(): Promise<void> {
-  const people = await seedPeople();
-  await seedStudies(people);
+  await seedStudies(await seedPeople());
 }

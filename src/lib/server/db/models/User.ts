@@ -4,8 +4,10 @@ import {
   type CreationOptional,
   type InferAttributes,
   type InferCreationAttributes,
+  type NonAttribute,
   type Sequelize
 } from 'sequelize';
+import type { Membership } from './Membership';
 
 /** A person with an account. The e-mail address is kept in lower case. */
 export class User extends Model<InferAttributes<User>, InferCreationAttributes<User>> {
@@ -15,6 +17,7 @@ export class User extends Model<InferAttributes<User>, InferCreationAttributes<U
   declare passwordHash: string;
   declare createdAt: CreationOptional<Date>;
   declare updatedAt: CreationOptional<Date>;
+  declare memberships?: NonAttribute<Membership[]>;
 
   static register(sequelize: Sequelize): void {
     User.init(
