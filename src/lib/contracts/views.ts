@@ -1,5 +1,3 @@
-import type { partKeys } from './comment';
-
 /** Small shapes that pages are given and that say nothing of the database. Instants are ISO texts. */
 
 export interface PersonName {
@@ -37,12 +35,4 @@ export interface StudySketch {
   path: [number, number][];
   /** A cycle that holds, where there is one. */
   cycle: [number, number][];
-}
-
-/** A part of the study on its line: how far it has come, and in a few words why. */
-export interface PartView {
-  key: (typeof partKeys)[number];
-  name: string;
-  state: 'empty' | 'ready' | 'stale' | 'signed';
-  summary: string;
 }

@@ -8,6 +8,7 @@ import { refusal } from '../errors';
 import { isUuid } from '../isUuid';
 import { openStudy } from '../studies/access';
 import { parseInput } from '../studies/parseInput';
+import { refreshParts } from '../studies/refreshParts';
 
 const Role = z.enum(studyRoles, { error: 'Choose contributor, reviewer or observer.' });
 
@@ -19,10 +20,12 @@ export async function changeShare(
   const { study } = await openStudy(context, input.studyId, 'study.share');
   const role = parseInput(Role, input.role, 'role');
   await withTransaction(async (transaction) => {
+    await study.reload({ transaction, lock: transaction.LOCK.UPDATE });
     const share = await findShare(study.id, input.userId, transaction);
     const before = share.role;
     if (before === role) return;
     await share.update({ role }, { transaction });
+    await refreshParts(study, transaction);
     await recordAudit(context, transaction, {
       act: 'study.changeShare',
       subjectType: 'user',

@@ -4,6 +4,7 @@ import { recordAudit } from '../audit/record';
 import type { Context } from '../context';
 import { Study } from '../db/models/Study';
 import { StudyShare } from '../db/models/StudyShare';
+import { refreshParts } from '../studies/refreshParts';
 
 const REACH: readonly StudyRole[] = ['observer', 'reviewer', 'contributor'];
 
@@ -22,21 +23,23 @@ export interface Grant {
  */
 export async function grantShare(context: Context, transaction: Transaction, grant: Grant): Promise<void> {
   const { studyId, userId, role } = grant;
-  const study = await Study.findByPk(studyId, { transaction });
+  const study = await Study.findByPk(studyId, { transaction, lock: transaction.LOCK.UPDATE });
   if (!study || study.ownerId === userId) return;
   const held = await StudyShare.findOne({ where: { studyId, userId }, transaction });
   if (held && REACH.indexOf(held.role) >= REACH.indexOf(role)) return;
+  const before = held?.role ?? null;
   if (held) await held.update({ role }, { transaction });
   else {
     const sharedById = grant.sharedById ?? context.actor?.userId ?? null;
     await StudyShare.create({ studyId, userId, role, sharedById }, { transaction });
   }
+  await refreshParts(study, transaction);
   await recordAudit(context, transaction, {
     act: 'study.share',
     subjectType: 'user',
     subjectId: userId,
     studyId,
     workspaceId: study.workspaceId,
-    details: { role, before: held ? held.previous('role') : null }
+    details: { role, before }
   });
 }

@@ -7,6 +7,7 @@ import { withTransaction } from '../db/transaction';
 import { openStudy, readRevision, requireOpen } from '../studies/access';
 import { parseInput } from '../studies/parseInput';
 import { quoteAnchor } from '../studies/quoteAnchor';
+import { refreshParts } from '../studies/refreshParts';
 
 /**
  * Opens a thread on a rate, a point, a part or the study, with its first comment. What the anchored thing reads now is
@@ -41,6 +42,7 @@ export async function openThread(
       { threadId: thread.id, authorId: actor.userId, kind, body, revision: revision.number },
       { transaction }
     );
+    await refreshParts(study, transaction);
     await recordAudit(context, transaction, {
       act: 'study.comment',
       subjectType: 'thread',

@@ -6,9 +6,9 @@ import { withTransaction } from '../db/transaction';
 import { openStudy, readRevision, requireOpen } from '../studies/access';
 import { inputsFingerprint } from '../studies/fingerprint';
 import { listFields } from '../studies/listFields';
-import { latestReadings } from '../studies/latestReadings';
 import { parseInput } from '../studies/parseInput';
 import { requireResult } from '../studies/requireResult';
+import { surroundingsOf } from '../studies/surroundings';
 
 const Input = z.strictObject({
   part: z.enum(['equilibria', 'trajectories'], { error: 'Choose Equilibria or Trajectories.' }),
@@ -46,8 +46,8 @@ export async function recordReading(
     );
     // Somebody may have saved in between: their row already tells the truth about the parts, so it is left to them.
     if (study.revision === number) {
-      const readings = await latestReadings(study.id, transaction);
-      await study.update(listFields({ question, content, fingerprint: textFingerprint, readings }), { transaction });
+      const around = await surroundingsOf(study.id, transaction);
+      await study.update(listFields({ question, content, fingerprint: textFingerprint, around }), { transaction });
     }
     await recordAudit(context, transaction, {
       act: 'study.recordReading',

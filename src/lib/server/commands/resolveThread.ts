@@ -2,6 +2,7 @@ import { recordAudit } from '../audit/record';
 import type { Context } from '../context';
 import { withTransaction } from '../db/transaction';
 import { openStudy, requireOpen } from '../studies/access';
+import { refreshParts } from '../studies/refreshParts';
 import { findThread } from './replyToThread';
 
 /** Closes a thread, or opens it again: by whoever opened it, or by those who may edit the study. */
@@ -23,6 +24,8 @@ export async function resolveThread(
         : { state: 'open', resolvedById: null, resolvedAt: null },
       { transaction }
     );
+    await study.reload({ transaction, lock: transaction.LOCK.UPDATE });
+    await refreshParts(study, transaction);
     await recordAudit(context, transaction, {
       act: input.resolved ? 'study.resolve' : 'study.reopen',
       subjectType: 'thread',

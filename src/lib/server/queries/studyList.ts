@@ -1,6 +1,7 @@
 import { QueryTypes } from 'sequelize';
 import { StudyListQuery, type StudyQuestion, type StudyRole } from '$lib/contracts/study';
-import type { PartView, PersonName, StudySketch } from '$lib/contracts/views';
+import type { PersonName, StudySketch } from '$lib/contracts/views';
+import type { PartStatus } from '$lib/study';
 import type { Context } from '../context';
 import { sequelize } from '../db/connection';
 import { abilitiesOf, can, readableStudies, requireActor, type StudyAct } from '../policies/ability';
@@ -16,7 +17,7 @@ export interface StudyListRow {
   species: { first: { common: string; scientific: string }; second: { common: string; scientific: string } };
   state: 'open' | 'archived';
   verdict: { kind: string; consequence: string; sentence: string };
-  parts: PartView[];
+  parts: PartStatus[];
   sketch: StudySketch | null;
   owner: PersonName;
   revision: number;
@@ -63,7 +64,7 @@ interface Found {
   verdictKind: string;
   verdictConsequence: string;
   verdictSentence: string;
-  partStates: PartView[];
+  partStates: PartStatus[];
   sketch: StudySketch | null;
   ownerId: string;
   ownerName: string;

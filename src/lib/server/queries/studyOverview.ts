@@ -1,8 +1,8 @@
 import type { StudyContent } from '$lib/contracts/content';
 import type { StudyQuestion } from '$lib/contracts/study';
-import type { PartView, PersonName } from '$lib/contracts/views';
+import type { PersonName } from '$lib/contracts/views';
 import type { ModelSpec } from '$lib/dynamics';
-import { assemble, type Issue, type RateNeed } from '$lib/study';
+import type { Issue, PartStatus, RateNeed } from '$lib/study';
 import type { Context } from '../context';
 import { Comment } from '../db/models/Comment';
 import { StudyShare } from '../db/models/StudyShare';
@@ -10,8 +10,8 @@ import { Thread } from '../db/models/Thread';
 import type { StudyAct } from '../policies/ability';
 import { openStudy, readRevision } from '../studies/access';
 import { assess, type StudyVerdict } from '../studies/assess';
-import { latestReadings } from '../studies/latestReadings';
 import { readingOf, type ReadingView } from '../studies/readingOf';
+import { surroundingsOf } from '../studies/surroundings';
 import { peopleByName } from './peopleByName';
 import { originOf } from './studyHistory';
 
@@ -35,7 +35,7 @@ export interface StudyOverviewView {
   origin: { id: string; title: string } | null;
   abilities: StudyAct[];
   /** The nine parts of the rail. */
-  parts: PartView[];
+  parts: PartStatus[];
   verdict: StudyVerdict;
   model: ModelSpec | null;
   missing: RateNeed[];
@@ -51,10 +51,9 @@ export async function studyOverview(context: Context, studyId: string): Promise<
   const { study, abilities } = await openStudy(context, studyId, 'study.read');
   const revision = await readRevision(study);
   const { question, content } = revision;
-  const [readings, shares, open, mustFix, person, origin, equilibria, trajectories] = await Promise.all([
-    latestReadings(study.id),
+  const [around, shares, mustFix, person, origin, equilibria, trajectories] = await Promise.all([
+    surroundingsOf(study.id),
     StudyShare.count({ where: { studyId: study.id } }),
-    Thread.count({ where: { studyId: study.id, state: 'open' } }),
     Comment.count({
       where: { kind: 'must fix' },
       include: [{ model: Thread, as: 'thread', where: { studyId: study.id, state: 'open' }, required: true }],
@@ -66,8 +65,8 @@ export async function studyOverview(context: Context, studyId: string): Promise<
     readingOf(study.id, 'equilibria', question, content),
     readingOf(study.id, 'trajectories', question, content)
   ]);
-  const { model, missing, issues } = assemble(question, content);
-  const { parts, verdict } = assess(question, content, readings, open);
+  const { assembled, parts, verdict } = assess(question, content, around);
+  const { model, missing, issues } = assembled;
   return {
     id: study.id,
     state: study.state,
@@ -90,6 +89,6 @@ export async function studyOverview(context: Context, studyId: string): Promise<
     issues,
     readings: { equilibria, trajectories },
     shares,
-    threads: { open, mustFix }
+    threads: { open: around.comments.open, mustFix }
   };
 }

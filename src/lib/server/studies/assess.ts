@@ -1,10 +1,20 @@
 import type { StudyContent } from '$lib/contracts/content';
 import type { StudyQuestion } from '$lib/contracts/study';
-import type { PartView } from '$lib/contracts/views';
-import { assemble, countWord, sentenceCase, verdict, type Assembled, type Verdict } from '$lib/study';
-import type { Reading } from '../db/models/Reading';
-import { partsOf } from './partsOf';
-import { cycleFacts, outcomeToday, resultsOf } from './results';
+import {
+  assemble,
+  changeWords,
+  countWord,
+  partInputs,
+  partStates,
+  sentenceCase,
+  verdict,
+  type Assembled,
+  type PartReading,
+  type PartStatus,
+  type Verdict
+} from '$lib/study';
+import type { ResultPart } from './fingerprint';
+import { outcomeToday, resultsOf } from './results';
 
 /** A verdict, or the honest lack of one: `none` while a rate is missing or wrong. */
 export type StudyVerdict = Omit<Verdict, 'kind'> & { kind: Verdict['kind'] | 'none' };
@@ -12,23 +22,58 @@ export type StudyVerdict = Omit<Verdict, 'kind'> & { kind: Verdict['kind'] | 'no
 export interface Assessment {
   assembled: Assembled;
   verdict: StudyVerdict;
-  parts: PartView[];
+  parts: PartStatus[];
 }
 
+/** The text that a part was last read from, and its revision. */
+export interface ReadText {
+  part: ResultPart;
+  revision: number;
+  question: StudyQuestion;
+  content: StudyContent;
+}
+/** What the parts lean on beside the text itself. */
+export interface Surroundings {
+  readings?: readonly ReadText[];
+  comments?: { open: number; total: number };
+  reviewers?: number;
+}
+
+const RESULTS: readonly ResultPart[] = ['equilibria', 'trajectories'];
+
 /** What a study says as a whole: its verdict, and how far each part has come. */
-export function assess(
-  question: StudyQuestion,
-  content: StudyContent,
-  readings: readonly Pick<Reading, 'part' | 'fingerprint' | 'sentence' | 'revision'>[],
-  openThreads = 0
-): Assessment {
+export function assess(question: StudyQuestion, content: StudyContent, around: Surroundings = {}): Assessment {
   const assembled = assemble(question, content);
   const told = verdictOf(question, content, assembled);
-  return {
+  const { readings = [], comments, reviewers } = around;
+  const statuses = partStates({
+    question,
+    content,
     assembled,
-    verdict: told,
-    parts: partsOf({ question, content, assembled, verdict: told, readings, openThreads })
-  };
+    verdict: told.kind === 'none' ? null : told.kind,
+    readings: readingsByPart(question, content, readings),
+    ...(comments ? { comments } : {}),
+    ...(reviewers === undefined ? {} : { reviewers })
+  });
+  const parts = statuses.map((status) => {
+    if (status.state !== 'stale') return status;
+    const [first] = status.changed;
+    const revision = readings.find(({ part }) => part === status.key)?.revision;
+    const words = first ? sentenceCase(changeWords(first, question, content)) : 'Inputs';
+    const more = status.changed.length > 1 ? ' and more' : '';
+    return { ...status, summary: `${words}${more} changed since version ${revision ?? '?'}` };
+  });
+  return { assembled, verdict: told, parts };
+}
+
+/** A result that nobody has read yet is as fresh as its inputs: only a reading can go stale. */
+function readingsByPart(question: StudyQuestion, content: StudyContent, readings: readonly ReadText[]) {
+  const byPart: Partial<Record<ResultPart, PartReading>> = {};
+  for (const part of RESULTS) {
+    const read = readings.find((reading) => reading.part === part) ?? { question, content };
+    byPart[part] = { inputs: partInputs(part, read.question, read.content) };
+  }
+  return byPart;
 }
 
 function verdictOf(question: StudyQuestion, content: StudyContent, assembled: Assembled): StudyVerdict {
@@ -40,9 +85,5 @@ function verdictOf(question: StudyQuestion, content: StudyContent, assembled: As
     return { kind: 'none', consequence: 'unknown', parts: [{ text: plain }], plain };
   }
   const { report, cycles } = resultsOf(model);
-  return verdict(question, report, {
-    model,
-    cycles: cycles.map(cycleFacts),
-    outcome: outcomeToday(question, content, model)
-  });
+  return verdict(question, report, { model, cycles, outcome: outcomeToday(content, model) });
 }

@@ -1,8 +1,7 @@
 import type { RateEntry, StudyContent } from '$lib/contracts/content';
 import type { StudyQuestion } from '$lib/contracts/study';
 import type { Change } from '$lib/contracts/views';
-import { displayUnit, formatNumber, listWords, rateNeed, timeNames } from '$lib/study';
-import { canonicalJson } from './fingerprint';
+import { canonicalJson, displayUnit, formatNumber, listWords, rateNeed, timeNames } from '$lib/study';
 
 interface Text {
   question: StudyQuestion;

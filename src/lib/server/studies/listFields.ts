@@ -1,19 +1,18 @@
 import type { StudyContent } from '$lib/contracts/content';
 import type { StudyQuestion } from '$lib/contracts/study';
-import type { Reading } from '../db/models/Reading';
-import { assess } from './assess';
+import { assess, type Surroundings } from './assess';
 import { sketchOf } from './sketch';
 
 interface Said {
   question: StudyQuestion;
   content: StudyContent;
   fingerprint: string;
-  readings: readonly Reading[];
+  around: Surroundings;
 }
 
 /** What the list shows of a study, worked out from what it says: the columns of its row that follow from its text. */
-export function listFields({ question, content, fingerprint, readings }: Said) {
-  const { assembled, verdict, parts } = assess(question, content, readings);
+export function listFields({ question, content, fingerprint, around }: Said) {
+  const { assembled, verdict, parts } = assess(question, content, around);
   const { first, second } = question;
   const names = [first.common, first.scientific, second.common, second.scientific];
   return {

@@ -3,7 +3,7 @@ import type { StudyQuestion } from '$lib/contracts/study';
 import type { PersonName } from '$lib/contracts/views';
 import { User } from '../db/models/User';
 import { inputsFingerprint, type ResultPart } from './fingerprint';
-import { latestReadings } from './latestReadings';
+import { latestReadings } from './surroundings';
 
 /** What an author last said a result says. */
 export interface ReadingView {

@@ -1,15 +1,20 @@
-import type { StudyContent } from '$lib/contracts/content';
-import type { StudyQuestion } from '$lib/contracts/study';
+import type { Start, StudyContent } from '$lib/contracts/content';
 import {
   findEquilibria,
+  isoclines,
   limitCycles,
-  simulate,
+  outcomeFrom,
+  separatrices,
+  suggestWindow,
+  vectorField,
   type EquilibriaReport,
+  type FieldArrow,
+  type Isocline,
   type LimitCycle,
   type ModelSpec,
-  type TrajectoryResult
+  type Separatrix
 } from '$lib/dynamics';
-import { outcomeOf, scaleOf, type CycleFacts, type Outcome } from '$lib/study';
+import { outcomeOf, type Outcome } from '$lib/study';
 import { deadline } from '../numerics/deadline';
 import { ResultCache } from './cache';
 import { fingerprintOf } from './fingerprint';
@@ -20,7 +25,17 @@ export interface ModelResults {
   cycles: LimitCycle[];
 }
 
+/** Everything drawn on the state plane that follows from the model and the starts. */
+export interface PlaneResults {
+  /** From 0, 0 to here. */
+  window: { xMax: number; yMax: number };
+  isoclines: Isocline[];
+  separatrices: Separatrix[];
+  field: FieldArrow[];
+}
+
 const models = new ResultCache<ModelResults>(64);
+const planes = new ResultCache<PlaneResults>(64);
 const ends = new ResultCache<{ outcome: Outcome | null }>(128);
 
 /** Equilibria and cycles of a model. */
@@ -31,58 +46,33 @@ export function resultsOf(model: ModelSpec): ModelResults {
   });
 }
 
-/** A cycle as the words about it want it. */
-export function cycleFacts(cycle: LimitCycle): CycleFacts {
-  return {
-    stability: cycle.multiplier < 1 ? 'stable' : 'unstable',
-    period: cycle.period,
-    low: { x: cycle.xMin, y: cycle.yMin },
-    high: { x: cycle.xMax, y: cycle.yMax },
-    mean: { x: cycle.xMean, y: cycle.yMean }
-  };
+/** Columns and rows of the direction field that is kept; a page may sample its own. */
+const FIELD = 24;
+
+/** Window, isoclines, divides and direction field of a model, in a window that holds its starts as well. */
+export function planeOf(model: ModelSpec, starts: readonly Start[]): PlaneResults {
+  const seen = starts.map(({ x, y }) => ({ x, y }));
+  return planes.get(fingerprintOf({ model, seen }), () => {
+    const { report, cycles } = resultsOf(model);
+    const turns = cycles.map(({ xMax, yMax }) => ({ x: xMax, y: yMax }));
+    const window = suggestWindow(model, report, [...seen, ...turns]);
+    return {
+      window,
+      isoclines: isoclines(model, window),
+      separatrices: separatrices(model, report, window),
+      field: vectorField(model, window, FIELD, FIELD)
+    };
+  });
 }
 
-/** Return times and turns after which a path has come to its end, or is not going to come to one. */
-const PATIENCE = 40;
-/** How near a path must lie to a cycle, as a share of the cycle's own size. */
-const NEAR_CYCLE = 0.03;
-
-/** Where today's counts end up; null where there are none, or where a long path does not say. */
-export function outcomeToday(question: StudyQuestion, content: StudyContent, model: ModelSpec): Outcome | null {
+/** Where today's counts end up; null where there are none, or where their path does not say. */
+export function outcomeToday(content: StudyContent, model: ModelSpec): Outcome | null {
   const [today] = content.starts;
   if (!today || (today.x === 0 && today.y === 0)) return null;
   const { x, y } = today;
-  return ends.get(fingerprintOf({ model, x, y, horizon: question.horizon }), () => ({
-    outcome: followTo({ x, y }, model, question.horizon)
-  })).outcome;
-}
-
-function followTo(start: { x: number; y: number }, model: ModelSpec, horizon: number): Outcome | null {
-  const { report, cycles } = resultsOf(model);
-  const times = [
-    horizon,
-    ...report.equilibria.flatMap(({ returnTime, period }) => [returnTime ?? 0, period ?? 0]),
-    ...cycles.map(({ period }) => period)
-  ];
-  const span = PATIENCE * Math.max(...times.filter((time) => Number.isFinite(time)));
-  const path = simulate(model, { start, span: [0, span], samples: 101, rtol: 1e-6, shouldStop: deadline(500) });
-  const end = { x: path.x.at(-1) ?? Number.NaN, y: path.y.at(-1) ?? Number.NaN };
-  if (path.outcome.status === 'failed') return unboundedEnd(path, report);
-  return outcomeOf(end, report) ?? (cycles.some((cycle) => isOn(end, cycle)) ? { ends: 'cycle' } : null);
-}
-
-/** A run that stopped because an abundance left the range of numbers has said where it goes. */
-function unboundedEnd(path: TrajectoryResult, report: EquilibriaReport): Outcome | null {
-  if (path.outcome.status !== 'failed' || path.outcome.reason !== 'notFinite') return null;
-  const scale = scaleOf(report);
-  const x = (path.x.at(-1) ?? 0) / scale.x;
-  const y = (path.y.at(-1) ?? 0) / scale.y;
-  return { ends: 'unbounded', species: x >= y ? 'first' : 'second' };
-}
-
-function isOn(end: { x: number; y: number }, cycle: LimitCycle): boolean {
-  if (!(cycle.multiplier < 1)) return false;
-  const sizeX = cycle.xMax - cycle.xMin;
-  const sizeY = cycle.yMax - cycle.yMin;
-  return cycle.points.some((point) => Math.hypot((end.x - point.x) / sizeX, (end.y - point.y) / sizeY) < NEAR_CYCLE);
+  return ends.get(fingerprintOf({ model, x, y }), () => {
+    const { report, cycles } = resultsOf(model);
+    const end = outcomeFrom(model, report, { x, y }, { cycles, shouldStop: deadline(500) });
+    return { outcome: outcomeOf(end, report, model) };
+  }).outcome;
 }

@@ -13,8 +13,8 @@ import { openStudy, readRevision, requireOpen } from './access';
 import { changesBetween, summaryOf } from './changes';
 import { fingerprintOf } from './fingerprint';
 import { listFields } from './listFields';
-import { latestReadings } from './latestReadings';
 import { parseInput } from './parseInput';
+import { surroundingsOf } from './surroundings';
 
 export interface Text {
   question: StudyQuestion;
@@ -58,7 +58,7 @@ export async function revise(context: Context, edit: Edit): Promise<Saved> {
     return { studyId: study.id, revision: base.number, fingerprint: base.fingerprint, summary: '', changed: [] };
   }
   const summary = [edit.lead, summaryOf(changed)].filter(Boolean).join(': ');
-  const fields = listFields({ question, content, fingerprint, readings: await latestReadings(study.id) });
+  const fields = listFields({ question, content, fingerprint, around: await surroundingsOf(study.id) });
 
   return withTransaction(async (transaction) => {
     await study.reload({ transaction, lock: transaction.LOCK.UPDATE });

@@ -2,8 +2,7 @@ import type { StudyContent } from '$lib/contracts/content';
 import type { StudySketch } from '$lib/contracts/views';
 import { simulate, type ModelSpec } from '$lib/dynamics';
 import { deadline } from '../numerics/deadline';
-import { planeOf } from './plane';
-import { resultsOf } from './results';
+import { planeOf, resultsOf } from './results';
 
 /** Points that a thumbnail of 80 pixels can show. */
 const POINTS = 40;
@@ -15,7 +14,9 @@ export function sketchOf(model: ModelSpec, content: StudyContent): StudySketch {
   const scaled = (points: readonly { x: number; y: number }[]): [number, number][] =>
     thinned(points).map(({ x, y }) => [share(x / window.xMax), share(y / window.yMax)]);
   const ofSpecies = (species: 'first' | 'second') =>
-    isoclines.filter((isocline) => isocline.species === species).map(({ points }) => scaled(points));
+    isoclines
+      .filter((isocline) => isocline.species === species && !isocline.trivial)
+      .map(({ points }) => scaled(points));
   const [today] = content.starts;
   const path = today
     ? simulate(model, {
@@ -26,7 +27,7 @@ export function sketchOf(model: ModelSpec, content: StudyContent): StudySketch {
         shouldStop: deadline(200)
       })
     : null;
-  const cycle = cycles.find(({ multiplier }) => multiplier < 1);
+  const cycle = cycles.find(({ stability }) => stability === 'stable');
   return {
     first: ofSpecies('first'),
     second: ofSpecies('second'),

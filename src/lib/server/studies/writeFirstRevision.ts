@@ -29,7 +29,7 @@ export async function writeFirstRevision(context: Context, transaction: Transact
       workspaceId: first.workspaceId,
       ownerId,
       originId: first.originId,
-      ...listFields({ question, content, fingerprint, readings: [] }),
+      ...listFields({ question, content, fingerprint, around: {} }),
       createdAt: now,
       changedAt: now
     },

@@ -7,7 +7,8 @@ import {
   type Sequelize
 } from 'sequelize';
 import type { StudyQuestion } from '$lib/contracts/study';
-import type { PartView, StudySketch } from '$lib/contracts/views';
+import type { StudySketch } from '$lib/contracts/views';
+import type { PartStatus } from '$lib/study';
 
 /**
  * One study as its list row: who owns it, where it stands, and what its latest revision says, restated so that the list
@@ -31,7 +32,7 @@ export class Study extends Model<InferAttributes<Study>, InferCreationAttributes
   declare verdictKind: string;
   declare verdictConsequence: string;
   declare verdictSentence: string;
-  declare partStates: PartView[];
+  declare partStates: PartStatus[];
   declare sketch: CreationOptional<StudySketch | null>;
   /** Lower-case words that the list searches. */
   declare searchText: string;
