@@ -37,6 +37,10 @@ const INNERMOST = 1e-3;
 /** Where the resource has no ceiling of its own, e^5 times the equilibrium is as far as the search goes. */
 const OUTERMOST_UNBOUNDED = 5;
 const GRID = 32;
+/** Turns followed in the hope that they settle at once, before the grid is used. */
+const ITERATES = 12;
+/** The search begins further in when a cycle is found to be smaller than `INNERMOST`, down to this. */
+const SMALLEST = 1e-6;
 const SCAN_RTOL = 1e-10;
 const FINE_RTOL = 1e-12;
 /** A turn may take this many times what it takes close to the equilibrium. */
@@ -112,12 +116,43 @@ function sectionThrough(spec: ModelSpec, system: System, point: Equilibrium): Se
   };
 }
 
-/** ln(return/start) on a grid; brackets of its zeros, and of hidden pairs of zeros. */
-function bracketsOn(section: Section, from: number, to: number): [number, number][] {
-  const gain = (s: number): number => {
-    const back = section.turn(s, SCAN_RTOL);
-    return back === null || !(back.s > 0) ? NaN : Math.log(back.s / s);
-  };
+/** ln(return/start) at scanning accuracy; NaN where the path does not come back. */
+function gainAt(section: Section, s: number): number {
+  const back = section.turn(s, SCAN_RTOL);
+  return back === null || !(back.s > 0) ? NaN : Math.log(back.s / s);
+}
+
+/**
+ * Paths cannot cross, so the return map increases and its iterates are monotone: from the outermost start they fall to the
+ * largest fixed point, from the innermost they rise to the smallest. When both arrive at one place there is exactly one
+ * cycle; when the outermost falls to the equilibrium there is none.
+ * @returns the brackets that prove it, or null when the iterates are too slow to tell.
+ */
+function bracketsByIteration(section: Section, from: number): [number, number][] | null {
+  let outer = section.sMax;
+  let settled = false;
+  for (let i = 0; i < ITERATES && !settled; i++) {
+    const next = section.turn(outer, SCAN_RTOL)?.s ?? NaN;
+    if (!(next < outer)) return null;
+    if (next < from) return [];
+    settled = outer - next < 1e-6 * outer;
+    outer = next;
+  }
+  if (!settled) return null;
+  // The limit lies below the last iterate by about as much again; the inner ones need only come this near.
+  let inner = from;
+  for (let i = 0; i < ITERATES; i++) {
+    const next = section.turn(inner, SCAN_RTOL)?.s ?? NaN;
+    if (!(next > inner)) return null;
+    inner = next;
+    if (inner > outer * (1 - 1e-3)) return [[Math.min(inner, outer * (1 - 1e-3)), outer * (1 + 1e-3)]];
+  }
+  return null;
+}
+
+/** Sign changes of the gain on a grid, and hidden pairs of them. */
+function bracketsOnGrid(section: Section, from: number, to: number): [number, number][] {
+  const gain = (s: number): number => gainAt(section, s);
   const s = Array.from({ length: GRID + 1 }, (_, i) => from * Math.pow(to / from, i / GRID));
   if ([0.6, 0.7, 0.8].every((part) => Math.abs(gain(s[Math.round(part * GRID)]!)) < CLOSED)) return [];
   const g = s.map(gain);
@@ -210,7 +245,8 @@ function measure(system: System, section: Section, around: number, s: number, pe
  * @param spec a checked model. @param report its equilibria.
  * @returns cycles from the innermost outwards; none for competition, where both species lose by each other's increase and
  *   every bounded path settles, and none for the classical model, whose orbits are all closed.
- *   Found on a grid of starts refined by bracketing, so two cycles nearer to each other than the grid may both be missed.
+ *   One strongly attracting cycle is proven to be the only one around its equilibrium; otherwise a grid of starts is
+ *   refined by bracketing, and two cycles nearer to each other than the grid may both be missed.
  *   Never throws.
  * @source strogatz2015 §8.7 (return map), kuznetsov2004 §1.5 (multiplier by Liouville's formula), hofbauerSigmund1998 §3.4
  */
@@ -224,7 +260,10 @@ export function limitCycles(spec: ModelSpec, report: EquilibriaReport): LimitCyc
     if (!(point.determinant > 0) || point.class === 'centre') return;
     const section = sectionThrough(spec, system, point);
     if (!(section.sMax > INNERMOST)) return;
-    for (const [low, high] of bracketsOn(section, INNERMOST, section.sMax)) {
+    let from = INNERMOST;
+    while (from > SMALLEST && point.trace * gainAt(section, from) < 0) from /= 10;
+    const brackets = bracketsByIteration(section, from) ?? bracketsOnGrid(section, from, section.sMax);
+    for (const [low, high] of brackets) {
       const miss = (s: number): number => (section.turn(s, FINE_RTOL)?.s ?? NaN) - s;
       const atLow = miss(low);
       const atHigh = miss(high);
