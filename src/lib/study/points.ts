@@ -308,12 +308,12 @@ export function pointParagraph(point: LetteredPoint, reading: Reading): PointPar
   };
 }
 
-export interface Invasion {
+export interface RareGrowth {
   resident: SpeciesKey;
   invader: SpeciesKey;
   /** Letter of the point where the resident rests alone. */
   letter: string;
-  /** Growth per head of the invader when rare, 1/time. */
+  /** Growth per head of the invader when rare, 1/time; 0 within rounding is given as 0. */
   rate: number;
   sentence: string;
 }
@@ -323,19 +323,19 @@ function canBeRare(model: ModelSpec, key: SpeciesKey): boolean {
   return (model[key].removal?.quota ?? 0) === 0 && (model[key].stocking ?? 0) === 0;
 }
 
-/** Who invades whom: growth when rare of each species at every point where the other rests alone. */
-export function invasionsOf(question: StudyQuestion, report: EquilibriaReport, model: ModelSpec): Invasion[] {
+/** Who invades whom: growth when rare of each species at every point where the other rests alone and returns to it. */
+export function invasionsOf(question: StudyQuestion, report: EquilibriaReport, model: ModelSpec): RareGrowth[] {
   return pointsOf(report).flatMap((point) => {
     if (!point.equilibrium || (point.who !== 'first' && point.who !== 'second')) return [];
     const resident = point.who;
     const invader: SpeciesKey = resident === 'first' ? 'second' : 'first';
     if (!canBeRare(model, invader)) return [];
-    const rate = invader === 'first' ? point.equilibrium.jacobian[0][0] : point.equilibrium.jacobian[1][1];
-    if (!Number.isFinite(rate)) return [];
-    const level = resident === 'first' ? point.x : point.y;
-    return [
-      { resident, invader, letter: point.letter, rate, sentence: invasionSentence(invader, level, rate, question) }
-    ];
+    const [[j11], [, j22]] = point.equilibrium.jacobian;
+    const [own, exact] = resident === 'first' ? [j11, j22] : [j22, j11];
+    if (!Number.isFinite(exact) || own >= 0) return [];
+    const rate = Math.abs(exact) <= 1e-12 * Math.abs(own) ? 0 : exact;
+    const sentence = invasionSentence(invader, levelOf(point, resident), rate, question);
+    return [{ resident, invader, letter: point.letter, rate, sentence }];
   });
 }
 
