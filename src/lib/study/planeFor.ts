@@ -1,0 +1,46 @@
+import {
+  isoclines,
+  separatrices,
+  suggestWindow,
+  vectorField,
+  type EquilibriaReport,
+  type FieldArrow,
+  type Isocline,
+  type LimitCycle,
+  type ModelSpec,
+  type Separatrix
+} from '$lib/dynamics';
+
+/** Everything drawn on the state plane that follows from the model and the starts. */
+export interface PlaneResults {
+  /** From 0, 0 to here. */
+  window: { xMax: number; yMax: number };
+  isoclines: Isocline[];
+  separatrices: Separatrix[];
+  field: FieldArrow[];
+}
+
+/** Columns and rows of the direction field. */
+const FIELD = 24;
+
+/**
+ * Window, isoclines, divides and direction field of a model, in a window that holds its points, cycles and starts.
+ * @param window keep this window instead, so that a picture does not jump while a slider moves
+ */
+export function planeFor(
+  model: ModelSpec,
+  report: EquilibriaReport,
+  cycles: readonly LimitCycle[],
+  starts: readonly { x: number; y: number }[],
+  window?: { xMax: number; yMax: number }
+): PlaneResults {
+  const turns = cycles.map(({ xMax, yMax }) => ({ x: xMax, y: yMax }));
+  const seen = starts.map(({ x, y }) => ({ x, y }));
+  const frame = window ?? suggestWindow(model, report, [...seen, ...turns]);
+  return {
+    window: frame,
+    isoclines: isoclines(model, frame),
+    separatrices: separatrices(model, report, frame),
+    field: vectorField(model, frame, FIELD, FIELD)
+  };
+}

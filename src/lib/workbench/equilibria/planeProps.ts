@@ -1,0 +1,73 @@
+import type { Start } from '$lib/contracts/content';
+import type { StudyQuestion } from '$lib/contracts/study';
+import type { Continuum, LimitCycle } from '$lib/dynamics';
+import { equilibriumLook } from '$lib/charts/planeHelpers';
+import type { PlaneData } from '$lib/charts/planeLayout';
+import { displayUnit, pointTitle, sentenceCase, type LetteredPoint } from '$lib/study';
+import type { PlaneResults } from '$lib/study';
+
+interface Drawn {
+  question: StudyQuestion;
+  points: readonly LetteredPoint[];
+  continua: readonly Continuum[];
+  cycles: readonly LimitCycle[];
+  plane: PlaneResults;
+  paths: readonly { label: string; points: { x: number; y: number }[] }[];
+  starts: readonly Start[];
+}
+
+/** The results of a study as the state plane chart wants them: species by their names, outcomes in words. */
+export function planeProps({ question, points, continua, cycles, plane, paths, starts }: Drawn): PlaneData {
+  const holds = (species: 'first' | 'second') => `${question[species].common} holds steady`;
+  const axis = (species: 'first' | 'second') => ({
+    label: `${sentenceCase(question[species].common)}`,
+    unit: displayUnit(question[species].unit).text,
+    short: sentenceCase(question[species].common.split(' ').at(-1) ?? '')
+  });
+  const labelled = new Set<string>();
+  const today = starts[0];
+  return {
+    window: plane.window,
+    axes: { x: axis('first'), y: axis('second') },
+    isoclines: plane.isoclines
+      .filter((line) => !line.trivial)
+      .map(({ species, points: line }) => {
+        const label = labelled.has(species) ? undefined : holds(species);
+        labelled.add(species);
+        return { species, points: line, ...(label ? { label } : {}) };
+      }),
+    field: plane.field,
+    equilibria: points.map((point) => ({
+      x: point.x,
+      y: point.y,
+      letter: point.letter,
+      name: pointTitle(point.who, question),
+      description: point.equilibrium?.class ?? 'held by a quota',
+      ...equilibriumLook(point.equilibrium?.class ?? 'held', point.stability)
+    })),
+    continua: continua.map((c) => ({
+      points: c.points,
+      stable: c.stability === 'stable' ? true : c.stability === 'unstable' ? false : null,
+      label: 'rest anywhere here'
+    })),
+    separatrices: plane.separatrices.filter((s) => s.kind === 'stable').map(({ points: line }) => ({ points: line })),
+    cycles: cycles.map((c) => ({ points: c.points, stable: c.stability === 'stable', label: 'the cycle' })),
+    trajectories: paths.map((path, i) => ({
+      points: path.points,
+      label: paths.length > 1 ? String(i + 1) : '',
+      emphasised: i === 0
+    })),
+    counts: today
+      ? [
+          {
+            x: today.x,
+            y: today.y,
+            label: today.label,
+            ...(today.seX === undefined ? {} : { seX: today.seX }),
+            ...(today.seY === undefined ? {} : { seY: today.seY })
+          }
+        ]
+      : [],
+    starts: starts.slice(1).map(({ x, y, label }) => ({ x, y, label }))
+  };
+}
