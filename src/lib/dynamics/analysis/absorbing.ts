@@ -57,6 +57,10 @@ function oneHeld(system: System, lifted: Lifted, held: Key): AbsorbingState[] {
   }));
 }
 
+function bothGone(held: Key[], remark: string): AbsorbingState {
+  return { x: 0, y: 0, held, stability: 'stable', remark };
+}
+
 /**
  * States that hold only because a species has run out under its quota, with the rest points of what remains.
  * @returns states sorted by x, then y; none when no quota is set. Under leslie growth a held resource leaves the consumer
@@ -69,16 +73,12 @@ export function absorbingStates(system: System, lifted: Lifted): AbsorbingState[
   const withoutCeiling = !INTERVAL.isZero(lifted.interval.leslie);
   if (first && !withoutCeiling) states.push(...oneHeld(system, lifted, 'first'));
   if (second) states.push(...oneHeld(system, lifted, 'second'));
-  const bothGone = first && (second || withoutCeiling) && system.spec.second.stocking !== undefined;
-  const bothHeld = first && second;
-  if (bothHeld || (bothGone && withoutCeiling)) {
-    states.push({
-      x: 0,
-      y: 0,
-      held: bothHeld ? ['first', 'second'] : ['first'],
-      stability: 'stable',
-      remark: bothHeld ? 'Both species ran out under their quotas.' : 'Without its resource the consumer is gone too.'
-    });
+  if (first && second) {
+    states.push(bothGone(['first', 'second'], 'Both species ran out under their quotas.'));
+  } else if (first && withoutCeiling && (system.spec.second.stocking ?? 0) === 0) {
+    states.push(
+      bothGone(['first'], 'The first species ran out under its quota, and without it the consumer is gone too.')
+    );
   }
   return states.sort((p, q) => p.x - q.x || p.y - q.y);
 }

@@ -42,6 +42,16 @@ export function lift(k: Coefficients<Interval>): Lifted {
   };
 }
 
+const steepness = (along: number, across: number) => Math.abs(along / across) || Infinity;
+
+/** Natural sizes of x and y at a point: a coordinate at 0 takes its own from the other one, along the isoclines. */
+function scales(x: number, y: number, a: number, b: number, c: number, d: number): [number, number] {
+  const fromY = Math.min(steepness(b, a), steepness(d, c)) * Math.abs(y);
+  const fromX = Math.min(steepness(a, b), steepness(c, d)) * Math.abs(x);
+  const orNothing = (value: number) => (Number.isFinite(value) ? value : 0);
+  return [Math.max(Math.abs(x), orNothing(fromY)), Math.max(Math.abs(y), orNothing(fromX))];
+}
+
 /**
  * Newton's method on the reduced equations.
  * @returns the point it settles on, or null when it leaves the finite plane or does not settle
@@ -56,7 +66,8 @@ export function polish(lifted: Lifted, x0: number, y0: number): { x: number; y: 
     const stepX = (g2.dy * g1.v - g1.dy * g2.v) / determinant;
     const stepY = (g1.dx * g2.v - g2.dx * g1.v) / determinant;
     if (!Number.isFinite(stepX) || !Number.isFinite(stepY)) return i > 0 && last < 1e-7 ? { x, y } : null;
-    const step = Math.max(Math.abs(stepX) / Math.abs(x), Math.abs(stepY) / (Math.abs(y) + Math.abs(stepY)) || 0);
+    const [scaleX, scaleY] = scales(x, y, g1.dx, g1.dy, g2.dx, g2.dy);
+    const step = Math.max(Math.abs(stepX) / scaleX, Math.abs(stepY) / scaleY);
     x -= stepX;
     y -= stepY;
     // Once steps are at rounding level they stop shrinking: the last digit is noise.
@@ -84,8 +95,10 @@ export function certifyBox(lifted: Lifted, x: number, y: number): CertifiedBox |
   const [c11, c12, c21, c22] = inverse as [Interval, Interval, Interval, Interval];
   const newtonX = add(multiply(c11, g1.v), multiply(c12, g2.v));
   const newtonY = add(multiply(c21, g1.v), multiply(c22, g2.v));
-  let rx = 2 * size(newtonX) + 4e-16 * Math.abs(x);
-  let ry = 2 * size(newtonY) + 4e-16 * Math.abs(y);
+  const [scaleX, scaleY] = scales(x, y, a, b, c, d);
+  let rx = 2 * size(newtonX) + 4e-16 * scaleX;
+  let ry = 2 * size(newtonY) + 4e-16 * scaleY;
+  if (!Number.isFinite(rx) || !Number.isFinite(ry)) return null;
   for (let attempt = 0; attempt < 5; attempt++, rx *= 8, ry *= 8) {
     const dx = interval(-rx, rx);
     const dy = interval(-ry, ry);

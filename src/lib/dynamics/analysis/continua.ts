@@ -71,7 +71,7 @@ export function continuaOf(system: System, search: Search): Continuum[] {
     const found: Continuum[] = [];
     for (let i = 0; i + 1 < marks.length; i++) {
       const [from, to] = [marks[i]!, marks[i + 1]!];
-      if (to - from <= 1e-12 * to) continue;
+      if (Number.isFinite(to) && to - from <= 1e-12 * to) continue;
       const inside = Number.isFinite(to) ? (from + to) / 2 : from + reach;
       if (!(curve.at(inside) >= 0)) continue;
       const continuum = continuumOf(system, curve, from, to, reach);

@@ -103,18 +103,26 @@ function eliminateConsumer<T>(ring: Ring<T>, k: Coefficients<T>): Omit<Eliminati
  * Eliminates one species from the equations with their invariant axes divided out.
  * @param ring arithmetic; zeros must be exact for degrees to fall
  * @param k coefficients of the model in that ring
+ * @param prefer which species to keep where both can be: roots crowded along one may lie apart along the other
  * @returns the elimination, the two own equations when the species do not touch, or null when the equations contradict
  *   each other identically. Never throws.
  */
-export function eliminate<T>(ring: Ring<T>, k: Coefficients<T>): Elimination<T> | Uncoupled<T> | null {
+export function eliminate<T>(
+  ring: Ring<T>,
+  k: Coefficients<T>,
+  prefer: 'first' | 'second' = 'first'
+): Elimination<T> | Uncoupled<T> | null {
   if (k.interaction === 'consumer-resource') {
     const elimination = eliminateConsumer(ring, k);
     return elimination && { along: 'first', ...elimination };
   }
   const first: Side<T> = { perHead: k.p, constant: k.s1, loss: k.c12 };
   const second: Side<T> = { perHead: k.q, constant: k.s2, loss: k.c21 };
-  if (!ring.isZero(k.c12)) return { along: 'first', ...eliminateRival(ring, first, second) };
-  if (!ring.isZero(k.c21)) return { along: 'second', ...eliminateRival(ring, second, first) };
+  const canFirst = !ring.isZero(k.c12);
+  const canSecond = !ring.isZero(k.c21);
+  if (canSecond && (prefer === 'second' || !canFirst))
+    return { along: 'second', ...eliminateRival(ring, second, first) };
+  if (canFirst) return { along: 'first', ...eliminateRival(ring, first, second) };
   return { along: 'both', first: firstAlone(ring, k), second: secondAlone(ring, k) };
 }
 

@@ -15,6 +15,9 @@ export interface EquilibriaOptions {
   includeInfeasible?: boolean;
 }
 
+/** Largest share of its own terms that a rate may keep at a point called an equilibrium. */
+const RESTING = 1e-9;
+
 function describe(system: System, lifted: Lifted, found: FoundPoint): Equilibrium {
   const { x, y, box, multiplicity } = found;
   const j = new Float64Array(4);
@@ -23,6 +26,15 @@ function describe(system: System, lifted: Lifted, found: FoundPoint): Equilibriu
   const over = box ? jacobianOver(lifted, x === 0 ? ZERO : box.x, y === 0 ? ZERO : box.y) : null;
   const usable = over?.every((entry) => Number.isFinite(entry.lo) && Number.isFinite(entry.hi)) ? over : null;
   return { x, y, feasible: x >= 0 && y >= 0, multiplicity, ...classify(system.spec, x, y, entries, usable) };
+}
+
+/** A merged place that is no equilibrium after all would be worse than a doubt. */
+function isResting(system: System, { x, y }: FoundPoint): boolean {
+  const rate = new Float64Array(2);
+  const magnitude = new Float64Array(2);
+  system.rhs(x, y, rate);
+  system.magnitude(x, y, magnitude);
+  return [0, 1].every((i) => Math.abs(rate[i]!) <= RESTING * magnitude[i]!);
 }
 
 function completenessOf(search: Search): string {
@@ -42,7 +54,10 @@ export function findEquilibria(spec: ModelSpec, options: EquilibriaOptions = {})
   const lifted = lift(coefficientsOf(INTERVAL, spec));
   const search = searchEquilibria(spec, lifted, options.includeInfeasible ?? false);
   const continua = continuaOf(system, search);
-  const isolated = search.points.filter((point) => !continua.some((continuum) => liesOn(continuum, point)));
+  const resting = search.points.filter((point) => isResting(system, point));
+  if (resting.length < search.points.length)
+    search.doubts.push('several equilibria in one place could not be told apart');
+  const isolated = resting.filter((point) => !continua.some((continuum) => liesOn(continuum, point)));
   const equilibria = isolated.map((point) => describe(system, lifted, point)).sort((p, q) => p.x - q.x || p.y - q.y);
   return {
     equilibria,

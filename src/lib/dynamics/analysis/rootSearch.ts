@@ -61,34 +61,44 @@ const real = (a: Polynomial<Interval>, t: number) => {
 };
 
 /** Pins a knot down to where the derivative of one order less than its own vanishes: a well-posed question. */
-function pinKnot(a: Polynomial<Interval>, knot: RootPlace): RootPlace {
+function pinKnot(a: Polynomial<Interval>, knot: RootPlace): PinnedPlace {
   let d = a;
   for (let i = 1; i < knot.atMost; i++) d = derivative(d);
   const near = positiveRoots(d).places.filter(
     (place) => place.single && place.value >= knot.lo * (1 - 1e-6) && place.value <= knot.hi * (1 + 1e-6)
   );
   const pinned = near[0];
-  return near.length === 1 && pinned ? { ...knot, value: pinned.value, lo: pinned.lo, hi: pinned.hi } : knot;
+  return near.length === 1 && pinned
+    ? { ...knot, value: pinned.value, lo: pinned.lo, hi: pinned.hi, from: knot.lo, to: knot.hi }
+    : { ...knot, from: knot.lo, to: knot.hi };
+}
+
+/** A place with the whole range of its knot, where it has one. */
+interface PinnedPlace extends RootPlace {
+  from: number;
+  to: number;
+}
+
+function pin(a: Polynomial<Interval>, place: RootPlace): PinnedPlace {
+  return place.single ? { ...place, from: place.lo, to: place.hi } : pinKnot(a, place);
 }
 
 /** Mirrors a place found on the reflected polynomial. */
-function mirror(place: RootPlace): RootPlace {
-  return { ...place, value: -place.value, lo: -place.hi, hi: -place.lo };
+function mirror(place: PinnedPlace): PinnedPlace {
+  return { ...place, value: -place.value, lo: -place.hi, hi: -place.lo, from: -place.to, to: -place.from };
 }
 
-interface SignedRoots extends PositiveRoots {
-  polynomial: Polynomial<Interval>;
-}
+type SignedRoots = Omit<PositiveRoots, 'places'> & { places: PinnedPlace[] };
 
 function rootsOf(polynomial: Polynomial<Interval>, includeNegative: boolean): SignedRoots {
   const positive = positiveRoots(polynomial);
-  const places = positive.places.map((place) => (place.single ? place : pinKnot(polynomial, place)));
+  const places = positive.places.map((place) => pin(polynomial, place));
   if (includeNegative && !positive.vanishes) {
     const mirrored = reflect(polynomial);
-    const negative = positiveRoots(mirrored).places.map((place) => (place.single ? place : pinKnot(mirrored, place)));
-    places.unshift(...negative.map(mirror).reverse());
+    const negative = positiveRoots(mirrored).places.map((place) => pin(mirrored, place));
+    places.unshift(...negative.map((place) => mirror(place)).reverse());
   }
-  return { ...positive, places, polynomial };
+  return { ...positive, places };
 }
 
 /**
@@ -101,6 +111,14 @@ function settle(approximate: Polynomial<Interval>, exact: () => Polynomial<Fract
     const known = coefficients[i];
     return signOf(c) === null && (known === undefined || FRACTION.isZero(known)) ? ZERO : c;
   });
+}
+
+const FAR_AWAY = 'an equilibrium at abundances beyond the precision of the rates cannot be excluded';
+
+interface Solved {
+  elimination: Elimination<Interval>;
+  roots: SignedRoots;
+  crowd: number;
 }
 
 /** Collects everything about one model. */
@@ -164,7 +182,7 @@ class Collector implements Search {
       if (!place.single) this.merged = true;
     }
     if (roots.atZero > 0) this.mergeInto(0, 0, roots.atZero);
-    if (!roots.endsExact) this.doubts.push('an equilibrium at the edge of the number range cannot be excluded');
+    if (roots.atInfinity > 0) this.doubts.push(FAR_AWAY);
   }
 
   /** Counts roots that coincide with a point already listed. */
@@ -184,8 +202,27 @@ class Collector implements Search {
   private together(): void {
     const elimination = eliminate(INTERVAL, this.k);
     if (elimination === null) return;
-    if (elimination.along === 'both') this.uncoupled(elimination.first, elimination.second);
-    else this.eliminated(elimination);
+    if (elimination.along === 'both') {
+      this.uncoupled(elimination.first, elimination.second);
+      return;
+    }
+    const attempt = this.solve(elimination);
+    const other = attempt.crowd > 0 ? eliminate(INTERVAL, this.k, 'second') : null;
+    if (other && other.along === 'second' && elimination.along === 'first') {
+      const second = this.solve(other);
+      this.eliminated(second.crowd < attempt.crowd ? second : attempt);
+    } else this.eliminated(attempt);
+  }
+
+  /** Roots of the resultant; `crowd` counts those that could not be told apart. */
+  private solve(elimination: Elimination<Interval>): Solved {
+    const resultant = settle(elimination.resultant, () => {
+      const exact = eliminate(FRACTION, this.exact(), elimination.along);
+      return exact && exact.along !== 'both' ? exact.resultant : [];
+    });
+    const roots = rootsOf(resultant, this.includeInfeasible);
+    const crowd = roots.places.reduce((sum, place) => sum + (place.single ? 0 : place.atMost), 0);
+    return { elimination: { ...elimination, resultant }, roots, crowd };
   }
 
   private uncoupled(first: Polynomial<Interval>, second: Polynomial<Interval>): void {
@@ -211,13 +248,8 @@ class Collector implements Search {
     if (xs.atZero > 0 && ys.atZero > 0) this.mergeInto(0, 0, xs.atZero * ys.atZero);
   }
 
-  private eliminated(elimination: Elimination<Interval>): void {
+  private eliminated({ elimination, roots }: Solved): void {
     const { along, top, bottom } = elimination;
-    const resultant = settle(elimination.resultant, () => {
-      const exact = eliminate(FRACTION, this.exact());
-      return exact && exact.along !== 'both' ? exact.resultant : [];
-    });
-    const roots = rootsOf(resultant, this.includeInfeasible);
     if (roots.vanishes) {
       const cuts = [...rootsOf(top, false).places, ...rootsOf(bottom, false).places].map((place) => place.value);
       this.curves.push({ along, at: (t) => real(top, t) / real(bottom, t), cuts: cuts.sort((p, q) => p - q) });
@@ -228,7 +260,7 @@ class Collector implements Search {
       else this.knot(elimination, place);
     }
     if (roots.atZero > 0) this.rootAtZero(elimination, roots.atZero);
-    if (!roots.endsExact) this.doubts.push('an equilibrium at the edge of the number range cannot be excluded');
+    if (roots.atInfinity > 0) this.rootAtInfinity(elimination, roots.atInfinity);
   }
 
   private place(along: 'first' | 'second', t: number, u: number): [number, number] {
@@ -257,16 +289,17 @@ class Collector implements Search {
     const box = along === 'first' ? { x: t, y: u } : { x: u, y: t };
     const guess = real(top, place.value) / real(bottom, place.value);
     const [x, y] = this.place(along, place.value, guess);
-    if (signOf(u) !== null) this.accept(x, y, 1, box);
-    else {
+    if (signOf(u) === null && !(u.hi - u.lo < 1e-9 * Math.max(Math.abs(x), Math.abs(y)))) {
       this.doubts.push('the side of an axis on which one equilibrium lies is below rounding');
-      if (guess >= 0) this.accept(x, y, 1, null);
     }
+    this.accept(x, y, 1, Number.isFinite(u.lo) && Number.isFinite(u.hi) ? box : null);
   }
 
   /** A point off the axes in the algebra; it may still lie on one, or beyond. */
   private accept(x: number, y: number, multiplicity: number, box: CertifiedBox | null): void {
     if (box) {
+      // Two starts can lead to one root; its boxes then meet.
+      if (this.points.some((other) => other.box && other.x !== 0 && other.y !== 0 && !disjoint(other.box, box))) return;
       const onFirstAxis = contains(box.y, 0) && this.takesSecondByHead;
       const onSecondAxis = contains(box.x, 0) && this.takesFirstByHead;
       if (onFirstAxis || onSecondAxis) {
@@ -285,15 +318,16 @@ class Collector implements Search {
   }
 
   /** Several roots within rounding: told apart in the plane where possible, else listed once. */
-  private knot(elimination: Elimination<Interval>, place: RootPlace): void {
+  private knot(elimination: Elimination<Interval>, place: PinnedPlace): void {
     const { along, top, bottom } = elimination;
-    const spread = Math.max((place.hi - place.lo) / Math.abs(place.value), 2 ** -24);
+    const spread = Math.max((place.to - place.from) / Math.abs(place.value), 2 ** -24);
     const apart: { x: number; y: number; box: CertifiedBox }[] = [];
-    for (const step of [-64, -4, -1, -0.25, 0.25, 1, 4, 64]) {
+    for (const step of [-4, -1, -0.4, -0.1, 0.1, 0.4, 1, 4]) {
       const found = this.certified(elimination, place.value * (1 + step * spread));
       if (!found) continue;
       const t = along === 'first' ? found.x : found.y;
-      if (Math.abs(t / place.value - 1) > 1024 * spread) continue;
+      const air = 2 ** -40 * Math.abs(t);
+      if (t < place.from - air || t > place.to + air) continue;
       const isNew = apart.every((other) => disjoint(other.box, found.box));
       if (isNew) apart.push(found);
     }
@@ -308,6 +342,24 @@ class Collector implements Search {
     const box = along === 'first' ? { x: t, y: u } : { x: u, y: t };
     this.merged = true;
     this.accept(x, y, place.atMost, Number.isFinite(u.lo) ? box : null);
+  }
+
+  /**
+   * The highest coefficient is 0 within rounding but not exactly: a root lies far out, at t or at -t. Exact arithmetic says
+   * on which side, and the elimination whether the other abundance is feasible there.
+   */
+  private rootAtInfinity(elimination: Elimination<Interval>, count: number): void {
+    const { top, bottom, resultant } = elimination;
+    const lead = (a: Polynomial<Interval>) => signOf(a[a.length - 1] ?? ZERO);
+    const [head, foot] = [lead(top), lead(bottom)];
+    if (head !== null && foot !== null && head * foot < 0) return;
+    const exact = eliminate(FRACTION, this.exact(), elimination.along);
+    if (count === 1 && exact && exact.along !== 'both') {
+      const far = exact.resultant[resultant.length - 1]?.n ?? 0n;
+      const near = signOf(resultant[resultant.length - 2] ?? ZERO);
+      if (near !== null && (far > 0n ? 1 : -1) === near) return;
+    }
+    this.doubts.push(FAR_AWAY);
   }
 
   /** A root t = 0 of the resultant is a point of the other axis counted again. */

@@ -182,7 +182,7 @@ function magnitudeOf(spec: ModelSpec, k: Coefficients<number>): System['magnitud
     const eaten = Math.abs((phi * y) / (1 + h * phi + w * y));
     const ax = Math.abs(x);
     const ay = Math.abs(y);
-    const ceiling = y === 0 ? 0 : Math.abs((leslie * y * y) / x);
+    const ceiling = leslie === 0 || y === 0 ? 0 : Math.abs((leslie * y * y) / x);
     out[0] = ax * (p0 + ax * (p1 + p2 * ax) + c12 * ay) + eaten + constant1;
     out[1] = ay * (q0 + ay * (q1 + q2 * ay) + c21 * ax) + e * eaten + ceiling + constant2;
   };

@@ -41,9 +41,9 @@ describe('positiveRoots', () => {
   });
 
   it('tells roots at zero, at infinity, and the zero polynomial', () => {
-    expect(positiveRoots([point(0), point(-2), point(1)])).toMatchObject({ atZero: 1, endsExact: true });
+    expect(positiveRoots([point(0), point(-2), point(1)])).toMatchObject({ atZero: 1, atInfinity: 0 });
     const faint: Interval = { lo: -1e-17, hi: 1e-17 };
-    expect(positiveRoots([point(-1), point(1), faint])).toMatchObject({ atInfinity: 1, endsExact: false });
-    expect(positiveRoots([faint, faint])).toMatchObject({ vanishes: true, endsExact: false });
+    expect(positiveRoots([point(-1), point(1), faint])).toMatchObject({ atZero: 0, atInfinity: 1 });
+    expect(positiveRoots([faint, faint])).toMatchObject({ vanishes: true, exactlyZero: false });
   });
 });

@@ -42,8 +42,8 @@ export interface PositiveRoots {
   atInfinity: number;
   /** Every coefficient is 0 within rounding. */
   vanishes: boolean;
-  /** `atZero` and `atInfinity` rest on exact zeros, not on rounding. */
-  endsExact: boolean;
+  /** `vanishes` rests on exact zeros, not on rounding. */
+  exactlyZero: boolean;
 }
 
 const algebra = polynomials(INTERVAL);
@@ -57,39 +57,32 @@ const FINEST = 2 ** -31;
 /** More pieces at one level than this means a root of high order; going on would only pile them up. */
 const WIDEST_FRONT = 24;
 
-/** Sign changes: fewest and most that the intervals allow. */
+/**
+ * Sign changes: fewest and most that the intervals allow. For each sign that the sequence so far could end on, the extremes
+ * are carried along; an exact zero is skipped, as the rule says.
+ */
 function signChanges(coefficients: Polynomial<Interval>): { fewest: number; most: number } {
-  // For each sign the sequence could end on: fewest and most changes so far. Sign 0 is skipped, as the rule says.
-  let plus = { fewest: 0, most: 0, open: false };
-  let minus = { fewest: 0, most: 0, open: false };
+  let plusFewest = Infinity;
+  let plusMost = -Infinity;
+  let minusFewest = Infinity;
+  let minusMost = -Infinity;
   let started = false;
   for (const c of coefficients) {
-    const sign = signOf(c);
-    if (sign === 0) continue;
-    const before = { plus: { ...plus }, minus: { ...minus }, started };
-    const reach = (own: typeof plus, other: typeof plus) => {
-      if (!before.started) return { fewest: 0, most: 0, open: true };
-      const fewest = Math.min(own.open ? own.fewest : Infinity, other.open ? other.fewest + 1 : Infinity);
-      const most = Math.max(own.open ? own.most : -Infinity, other.open ? other.most + 1 : -Infinity);
-      return { fewest, most, open: true };
-    };
-    const toPlus = reach(before.plus, before.minus);
-    const toMinus = reach(before.minus, before.plus);
-    if (sign === 1) {
-      plus = toPlus;
-      minus = { fewest: 0, most: 0, open: false };
-    } else if (sign === -1) {
-      minus = toMinus;
-      plus = { fewest: 0, most: 0, open: false };
-    } else {
-      plus = toPlus;
-      minus = toMinus;
-    }
+    const canBePlus = c.hi > 0;
+    const canBeMinus = c.lo < 0;
+    if (!canBePlus && !canBeMinus) continue;
+    const nextPlusFewest = started ? Math.min(plusFewest, minusFewest + 1) : 0;
+    const nextPlusMost = started ? Math.max(plusMost, minusMost + 1) : 0;
+    const nextMinusFewest = started ? Math.min(minusFewest, plusFewest + 1) : 0;
+    const nextMinusMost = started ? Math.max(minusMost, plusMost + 1) : 0;
+    plusFewest = canBePlus ? nextPlusFewest : Infinity;
+    plusMost = canBePlus ? nextPlusMost : -Infinity;
+    minusFewest = canBeMinus ? nextMinusFewest : Infinity;
+    minusMost = canBeMinus ? nextMinusMost : -Infinity;
     started = true;
   }
-  const ends = [plus, minus].filter((end) => end.open);
-  if (ends.length === 0) return { fewest: 0, most: 0 };
-  return { fewest: Math.min(...ends.map((e) => e.fewest)), most: Math.max(...ends.map((e) => e.most)) };
+  if (!started) return { fewest: 0, most: 0 };
+  return { fewest: Math.min(plusFewest, minusFewest), most: Math.max(plusMost, minusMost) };
 }
 
 /** a(scale * x). */
@@ -283,13 +276,12 @@ export function positiveRoots(polynomial: Polynomial<Interval>): PositiveRoots {
   let first = 0;
   while (first < trimmed.length && contains(trimmed[first]!, 0)) first += 1;
   if (first === trimmed.length) {
-    return { places: [], atZero: 0, atInfinity: 0, vanishes: true, endsExact: trimmed.length === 0 };
+    return { places: [], atZero: 0, atInfinity: 0, vanishes: true, exactlyZero: trimmed.length === 0 };
   }
   let last = trimmed.length - 1;
   while (contains(trimmed[last]!, 0)) last -= 1;
   const body = trimmed.slice(first, last + 1);
-  const endsExact = last === trimmed.length - 1 && trimmed.slice(0, first).every((c) => signOf(c) === 0);
-  const base = { atZero: first, atInfinity: trimmed.length - 1 - last, vanishes: false, endsExact };
+  const base = { atZero: first, atInfinity: trimmed.length - 1 - last, vanishes: false, exactlyZero: false };
   const changes = signChanges(body);
   if (changes.most === 0) return { ...base, places: [] };
 
