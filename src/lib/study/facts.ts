@@ -2,7 +2,8 @@ import type { StudyQuestion } from '$lib/contracts/study';
 import type { EquilibriaReport, SpeciesKey } from '$lib/dynamics';
 import { areaWords, countedNoun } from './echo';
 import { formatDuration, formatNumber, formatPercent, formatWithSE, sentenceCase, timeNames } from './format';
-import { invasionsOf, pointsOf, type LetteredPoint, type PointErrors } from './points';
+import { invasionsOf } from './invasions';
+import { levelOf, pointsOf, type LetteredPoint, type PointErrors } from './points';
 import { onTheArea } from './rateUnits';
 import { displayUnit, type UnitPart } from './units';
 import type { Verdict, VerdictExtras } from './verdict';
@@ -49,7 +50,7 @@ const text = (label: string, value: string, note: string | null = null): Fact =>
 
 function levelAt(point: LetteredPoint, key: SpeciesKey, question: StudyQuestion, errors: FactExtras['errors']): Fact {
   const se = errors?.[point.letter];
-  const value = key === 'first' ? point.x : point.y;
+  const value = levelOf(point, key);
   return level(
     `${question[key].common} at rest (${point.letter})`,
     value,

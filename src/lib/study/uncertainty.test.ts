@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { findEquilibria, type ModelSpec } from '$lib/dynamics';
 import { assemble } from './assemble';
-import { invasionsOf, pointsOf } from './points';
+import { invasionsOf } from './invasions';
+import { pointsOf } from './points';
 import { crayfish, crayfishContent, goatContent, goats, rate } from './testStudies';
 import { eigenvalueSE, equilibriumSE, errorsOf, invasionSE } from './uncertainty';
 

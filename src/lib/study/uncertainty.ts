@@ -8,7 +8,8 @@ import {
   type ModelSpec
 } from '$lib/dynamics';
 import type { Assembled } from './assemble';
-import { pointsOf, type LetteredPoint, type PointErrors, type RareGrowth } from './points';
+import type { RareGrowth } from './invasions';
+import { pointsOf, type LetteredPoint, type PointErrors } from './points';
 
 /**
  * Standard errors of results by the delta method: var(Y) = Σ (∂Y/∂p)² var(p), the estimates being independent. Exact

@@ -9,7 +9,9 @@ import {
 import type { StudyQuestion } from '$lib/contracts/study';
 import { assemble } from './assemble';
 import { factsFor } from './facts';
-import { invasionsOf, pointParagraph, pointsOf, type PointErrors } from './points';
+import { invasionsOf } from './invasions';
+import { pointParagraph } from './pointParagraph';
+import { pointsOf, type PointErrors } from './points';
 import { crayfish, crayfishContent, fern, fernContent, goatContent, goats } from './testStudies';
 import { outcomeOf, verdict, type Outcome } from './verdict';
 

@@ -2,7 +2,15 @@ import type { StudyQuestion } from '$lib/contracts/study';
 import type { EquilibriaReport, ModelSpec, SpeciesKey } from '$lib/dynamics';
 import { areaWords } from './echo';
 import { countWord, formatDuration, sentenceCase } from './format';
-import { beyondHorizon, isBelowOne, levelWords, type CycleFacts, type LetteredPoint, type Who } from './points';
+import {
+  beyondHorizon,
+  isBelowOne,
+  levelOf,
+  levelWords,
+  type CycleFacts,
+  type LetteredPoint,
+  type Who
+} from './points';
 import type { Outcome, VerdictKind, VerdictPart } from './verdict';
 
 /**
@@ -30,7 +38,6 @@ const species = (key: SpeciesKey, question: StudyQuestion): VerdictPart => ({
 });
 const both = (question: StudyQuestion): Piece[] => [species('first', question), ' and ', species('second', question)];
 const otherOf = (key: SpeciesKey): SpeciesKey => (key === 'first' ? 'second' : 'first');
-const levelOf = (point: { x: number; y: number }, key: SpeciesKey) => (key === 'first' ? point.x : point.y);
 const isPresent = (who: Who, key: SpeciesKey) => who === 'both' || who === key;
 
 /** What the verdict is conditional on: `at these rates`, `at this removal`. */
