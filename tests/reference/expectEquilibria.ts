@@ -1,5 +1,5 @@
 import { expect } from 'vitest';
-import { findEquilibria, type Complex, type Equilibrium, type ModelSpec } from '$lib/dynamics';
+import { findEquilibria, type Complex, type EquilibriaReport, type Equilibrium, type ModelSpec } from '$lib/dynamics';
 
 export interface ExpectedEquilibrium {
   point: number[];
@@ -47,8 +47,10 @@ function expectStability(found: Equilibrium, expected: ExpectedEquilibrium): voi
 }
 
 /** Asserts every feasible equilibrium of a case, each value within the tolerance that the case states. */
-export function expectEquilibria(testCase: EquilibriaCase): void {
-  const report = findEquilibria(testCase.document as ModelSpec);
+export function expectEquilibria(
+  testCase: EquilibriaCase,
+  report: EquilibriaReport = findEquilibria(testCase.document as ModelSpec)
+): void {
   const wanted = testCase.equilibria.filter(expected => expected.onCurve !== true);
   expect(report.equilibria.map(({ x, y }) => [x, y])).toHaveLength(testCase.isolated);
   expect(report.complete, report.completeness).toBe(true);
