@@ -1,11 +1,12 @@
 /** What must be done once before the first request: reach the database, bring its tables up to date, seed, take mail. */
 import { setTimeout as sleep } from 'node:timers/promises';
+import { sweepSessions } from './auth/sessions';
 import { config, type Config } from './config';
-import { isDatabaseAway, pingDatabase, sequelize, asRefusal } from './db/connection';
+import { asRefusal, closeDatabase, isDatabaseAway, pingDatabase, sequelize } from './db/connection';
 import { migrate } from './db/migrate';
 import { AppError } from './errors';
 import { log } from './log';
-import { startMailbox } from './mail/mailbox';
+import { startMailbox, stopMailbox } from './mail/mailbox';
 import { seed } from './seed/seed';
 
 const ATTEMPTS = 30;
@@ -29,13 +30,22 @@ function maySeed({ environment, databaseUrl }: Config): boolean {
   return environment !== 'production' || ['127.0.0.1', 'localhost', '[::1]'].includes(host);
 }
 
+/** The web server has answered its last request: what still holds the process open is closed, so that it ends at once. */
+function stopWithTheServer(): void {
+  process.once('sveltekit:shutdown', () => {
+    void Promise.allSettled([stopMailbox(), closeDatabase()]).then(() => process.exit());
+  });
+}
+
 /** Readies the process. Safe to repeat; throws when the database cannot be reached or a migration fails. */
 export async function startUp(): Promise<void> {
   const settings = config();
   await waitForDatabase();
   const applied = await migrate(sequelize());
   if (applied.length) log().info({ applied }, 'migrated');
+  await sweepSessions();
   if (settings.smtpUrl === null) await startMailbox();
+  stopWithTheServer();
   if (!settings.seed) return;
   if (maySeed(settings)) await seed();
   else log().warn('the demo is not seeded into another machine’s database in production');
