@@ -2,6 +2,7 @@
 import { spawn } from 'node:child_process';
 import { closeSync, existsSync, mkdirSync, openSync, readFileSync, readlinkSync } from 'node:fs';
 import { dirname } from 'node:path';
+import { stripVTControlCharacters } from 'node:util';
 
 const setpriv = ['/usr/bin/setpriv', '/bin/setpriv'].find((path) => existsSync(path));
 const hasProc = existsSync('/proc/self/stat');
@@ -77,7 +78,8 @@ export async function runLogged(command, args, { logFile, env = process.env, ...
   try {
     const plain = { ...env, NO_COLOR: '1', FORCE_COLOR: '0' };
     const code = await ended(spawnTied(command, args, { stdio: ['ignore', log, log], env: plain, ...options }));
-    return { code, output: readFileSync(logFile, 'utf8') };
+    // Some tools colour what they print whatever they are told.
+    return { code, output: stripVTControlCharacters(readFileSync(logFile, 'utf8')) };
   } finally {
     closeSync(log);
   }
