@@ -1,5 +1,5 @@
 import type { StudyQuestion } from '$lib/contracts/study';
-import type { Continuum } from '$lib/dynamics';
+import type { Continuum, SpeciesKey } from '$lib/dynamics';
 import { areaWords, growthWords } from './echo';
 import { formatDuration, sentenceCase } from './format';
 import { invasionsOf } from './invasions';
