@@ -128,6 +128,7 @@ export function seriesChart(
     let theme = $state.raw<ChartTheme>(untrack(() => readTheme(canvas)));
     let gone = false;
     let settled = false;
+    let shownTheme: ChartTheme | null = null;
     const stateNow = () => ({ ...panelOf(), theme });
     const stopWatching = watchTheme(() => (theme = readTheme(canvas)));
     const report: Plugin<'line'> = { id: 'sedgelineArea', afterUpdate: ({ chartArea }) => onarea(canvas, chartArea) };
@@ -146,7 +147,9 @@ export function seriesChart(
       // Lines are changed in place: chart.js then moves each from its old answer to the new.
       made.data.datasets = data.datasets.map((set, i) => Object.assign(made.data.datasets[i] ?? {}, set));
       made.options = options ?? {};
-      made.update(settled ? undefined : 'none');
+      // Only a new answer moves; another theme or a printed page must be right at once.
+      made.update(settled && shownTheme === theme ? undefined : 'none');
+      shownTheme = theme;
       settled = true;
     });
     $effect(() => {

@@ -18,6 +18,9 @@ describe('panels', () => {
     const flat = { ...base, runs: [run('1', [1, 1, 1, 1], [100, 100, 100, 100])] };
     expect(needsPanels(flat, 'linear')).toBe(true);
     expect(needsPanels(flat, 'log')).toBe(false);
+    const many = Array.from({ length: 5 }, (_, i) => run(String(i + 1), [1, 1, 1, 1], [1, 1, 1, 1]));
+    expect(needsPanels({ ...base, runs: many.slice(0, 4) }, 'linear')).toBe(false);
+    expect(needsPanels({ ...base, runs: many }, 'linear')).toBe(true);
     expect(needsPanels({ ...base, second: { ...base.second, unit: 'per km' } }, 'log')).toBe(true);
   });
   it('hold all values, starting at 0 on a linear axis and at a power of ten on a log axis', () => {
@@ -60,6 +63,7 @@ describe('reading', () => {
   });
   it('sets calendar years or spans', () => {
     expect(formatTime(6, base.time, 1)).toBe('2031');
+    expect(formatTime(6, base.time, 0.1)).toBe('2031');
     expect(formatTime(6.5, { label: 'Time', unit: 'years' }, 0.1)).toBe('6.5 years');
   });
   it('lists round times with both ends', () => {

@@ -41,6 +41,8 @@ export interface SeriesPanel {
 
 /** Scales further apart than this flatten one of two species sharing an axis. */
 const SHARED_AXIS_RATIO = 20;
+/** More runs than this, and the lines of two species on one axis can no longer be followed. */
+const SHARED_AXIS_RUNS = 4;
 /** A log axis shows at most this many decades below its top: below them a value is nought for every purpose. */
 const LOG_DECADES = 6;
 
@@ -55,9 +57,12 @@ function largest(data: SeriesData, species: SpeciesKey): number {
 }
 const finite = (value: number | undefined) => (value !== undefined && Number.isFinite(value) ? value : 0);
 
-/** Whether the species need a panel each: their units differ, or on a linear axis one would lie flat under the other. */
+/**
+ * Whether the species need a panel each: their units differ, the runs are many, or on a linear axis one species would lie
+ * flat under the other.
+ */
 export function needsPanels(data: SeriesData, scale: ScaleKind): boolean {
-  if (data.first.unit !== data.second.unit) return true;
+  if (data.first.unit !== data.second.unit || data.runs.length > SHARED_AXIS_RUNS) return true;
   const [a, b] = [largest(data, 'first'), largest(data, 'second')];
   return scale === 'linear' && a > 0 && b > 0 && Math.max(a / b, b / a) > SHARED_AXIS_RATIO;
 }
@@ -148,7 +153,8 @@ export function valueAt(run: SeriesRun, species: SpeciesKey, t: number): number 
 
 /** "2031" with an origin, otherwise "6 years"; as many decimals as `step` needs. */
 export function formatTime(t: number, time: SeriesTime, step: number, bare = false): string {
-  const decimals = Math.max(0, -Math.floor(Math.log10(step) + 1e-9));
+  const whole = time.origin !== undefined && Number.isInteger(time.origin + t);
+  const decimals = whole ? 0 : Math.max(0, -Math.floor(Math.log10(step) + 1e-9));
   const text = groupDigits(((time.origin ?? 0) + t).toFixed(decimals));
   return time.origin !== undefined || bare ? text : `${text} ${time.unit}`;
 }

@@ -180,13 +180,9 @@ function placeLabels(chart: Chart, state: PanelState): Placed[] {
       );
     });
   }
-  for (const threshold of shownThresholds(state)) {
-    const y = Y.getPixelForValue(threshold.value);
-    const half = textWidth(threshold.label, SMALL) / 2 + 6;
-    const spots = [1, 0.9, 0.8, 0.7, 0.6, 0.5, 0.4, 0.3, 0.2, 0.1].flatMap((share) =>
-      [-9, 10].map((dy) => ({ x: area.left + half + share * (area.right - area.left - 2 * half), y: y + dy }))
-    );
-    keep(placeWithin(spots, threshold.label, { size: SMALL, box, obstacles }), inkOf(threshold.species), SMALL);
+  for (const event of data.events ?? []) {
+    if (event.value === undefined || (event.species && !panel.species.includes(event.species))) continue;
+    obstacles.push({ x: X.getPixelForValue(event.t), y: Y.getPixelForValue(event.value), r: 8, weight: 100 });
   }
   for (const event of data.events ?? []) {
     const x = X.getPixelForValue(event.t);
@@ -201,6 +197,14 @@ function placeLabels(chart: Chart, state: PanelState): Placed[] {
       const rows = [10, 24, 38, 52].flatMap((dy) => [half, -half].map((dx) => ({ x: x + dx, y: area.top + dy })));
       keep(placeWithin(rows, event.label, { size: SMALL, box, obstacles }), theme.ink, SMALL);
     }
+  }
+  for (const threshold of shownThresholds(state)) {
+    const y = Y.getPixelForValue(threshold.value);
+    const half = textWidth(threshold.label, SMALL) / 2 + 6;
+    const spots = [1, 0.9, 0.8, 0.7, 0.6, 0.5, 0.4, 0.3, 0.2, 0.1].flatMap((share) =>
+      [-9, 10].map((dy) => ({ x: area.left + half + share * (area.right - area.left - 2 * half), y: y + dy }))
+    );
+    keep(placeWithin(spots, threshold.label, { size: SMALL, box, obstacles }), inkOf(threshold.species), SMALL);
   }
   for (const period of data.periods ?? []) {
     const [from, to] = [
@@ -311,7 +315,7 @@ export function seriesPlugin(state: () => PanelState): Plugin<'line'> {
       if (!X || !Y) return;
       const toY = (value: number) => Y.getPixelForValue(value);
       const shows = (value: number | null | undefined): value is number =>
-        value !== null && value !== undefined && Number.isFinite(value) && (panel.scale === 'linear' || value > 0);
+        value !== null && value !== undefined && Number.isFinite(value) && value >= panel.yMin * (1 - 1e-9);
       ctx.save();
       for (const count of (data.counts ?? []).filter((c) => panel.species.includes(c.species) && shows(c.value))) {
         const x = X.getPixelForValue(count.t);
