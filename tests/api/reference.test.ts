@@ -15,8 +15,9 @@ beforeAll(async () => {
 });
 
 /** Three of the published examples state formulas and orbits rather than a list of points; they follow below. */
-const isStationary = (testCase: object): testCase is EquilibriaCase => 'equilibria' in testCase;
-const stationary = [...equilibria.cases, ...published.cases].filter(isStationary);
+const stationary = [...equilibria.cases, ...published.cases].filter(
+  (testCase) => 'equilibria' in testCase
+) as unknown as EquilibriaCase[];
 
 describe('POST /api/v1/equilibria on cases with exact and published answers', () => {
   it.each(stationary.map((testCase) => [testCase.id, testCase.title, testCase] as const))(
