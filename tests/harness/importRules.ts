@@ -123,6 +123,9 @@ export function readSource(file: SourceFile): Reading {
     const lineOf = (node: ts.Node) => source.getLineAndCharacterOfPosition(node.getStart()).line + script.firstLine;
     const add = (specifier: string, isType: boolean, node: ts.Node) =>
       reading.imports.push({ specifier, isType, line: lineOf(node) });
+    // Asking a node for its text is slow; most files hold neither.
+    const mayReadEnvironment = script.text.includes('process');
+    const mayNameWorker = script.text.includes('import.meta.url');
     const visit = (node: ts.Node): void => {
       if ((ts.isImportDeclaration(node) || ts.isExportDeclaration(node)) && node.moduleSpecifier) {
         if (ts.isStringLiteral(node.moduleSpecifier)) add(node.moduleSpecifier.text, isTypeOnly(node), node);
@@ -131,10 +134,10 @@ export function readSource(file: SourceFile): Reading {
         if (target && ts.isStringLiteralLike(target)) add(target.text, false, node);
       } else if (ts.isImportTypeNode(node) && ts.isLiteralTypeNode(node.argument)) {
         if (ts.isStringLiteral(node.argument.literal)) add(node.argument.literal.text, true, node);
-      } else if (ts.isPropertyAccessExpression(node) || ts.isElementAccessExpression(node)) {
+      } else if (mayReadEnvironment && (ts.isPropertyAccessExpression(node) || ts.isElementAccessExpression(node))) {
         if (/^process(\.env|\['env'\])$/.test(node.getText(source))) reading.environment.push(lineOf(node));
       }
-      const worker = workerAddress(node);
+      const worker = mayNameWorker ? workerAddress(node) : undefined;
       if (worker !== undefined) add(worker, false, node);
       ts.forEachChild(node, visit);
     };
