@@ -1,13 +1,14 @@
 import type { Start } from '$lib/contracts/content';
 import type { StudyQuestion } from '$lib/contracts/study';
-import type { Continuum, LimitCycle } from '$lib/dynamics';
+import { compile, type Continuum, type LimitCycle, type ModelSpec } from '$lib/dynamics';
 import { equilibriumLook } from '$lib/charts/planeHelpers';
 import type { PlaneData } from '$lib/charts/planeLayout';
-import { displayUnit, pointTitle, sentenceCase, type LetteredPoint } from '$lib/study';
-import type { PlaneResults } from '$lib/study';
+import { displayUnit, pointTitle, sentenceCase, type LetteredPoint, type PlaneResults } from '$lib/study';
+import { shortNames } from '../shortNames';
 
 interface Drawn {
   question: StudyQuestion;
+  model: ModelSpec;
   points: readonly LetteredPoint[];
   continua: readonly Continuum[];
   cycles: readonly LimitCycle[];
@@ -17,12 +18,12 @@ interface Drawn {
 }
 
 /** The results of a study as the state plane chart wants them: species by their names, outcomes in words. */
-export function planeProps({ question, points, continua, cycles, plane, paths, starts }: Drawn): PlaneData {
-  const holds = (species: 'first' | 'second') => `${question[species].common} holds steady`;
+export function planeProps({ question, model, points, continua, cycles, plane, paths, starts }: Drawn): PlaneData {
+  const holds = (species: 'first' | 'second') => `${shortNames(question)[species]} holds steady`;
   const axis = (species: 'first' | 'second') => ({
     label: `${sentenceCase(question[species].common)}`,
     unit: displayUnit(question[species].unit).text,
-    short: sentenceCase(question[species].common.split(' ').at(-1) ?? '')
+    short: sentenceCase(shortNames(question)[species])
   });
   const labelled = new Set<string>();
   const today = starts[0];
@@ -36,7 +37,7 @@ export function planeProps({ question, points, continua, cycles, plane, paths, s
         labelled.add(species);
         return { species, points: line, ...(label ? { label } : {}) };
       }),
-    field: plane.field,
+    field: fieldOf(model),
     equilibria: points.map((point) => ({
       x: point.x,
       y: point.y,
@@ -69,5 +70,15 @@ export function planeProps({ question, points, continua, cycles, plane, paths, s
         ]
       : [],
     starts: starts.slice(1).map(({ x, y, label }) => ({ x, y, label }))
+  };
+}
+
+/** Direction of change anywhere, for the chart to sample at the width it is drawn. */
+function fieldOf(model: ModelSpec) {
+  const system = compile(model);
+  const rate = new Float64Array(2);
+  return (x: number, y: number) => {
+    system.rhs(x, y, rate);
+    return { dx: rate[0] ?? 0, dy: rate[1] ?? 0 };
   };
 }

@@ -1,6 +1,6 @@
 import type { StudyContent } from '$lib/contracts/content';
 import type { StudyQuestion } from '$lib/contracts/study';
-import { findEquilibria, limitCycles, simulate, type LimitCycle } from '$lib/dynamics';
+import { findEquilibria, limitCycles, simulate, type LimitCycle, type ModelSpec } from '$lib/dynamics';
 import { assemble, pointsOf, verdict, type LetteredPoint, type Verdict } from '$lib/study';
 import { planeFor, type PlaneResults } from '$lib/study';
 
@@ -16,6 +16,7 @@ export type Preview =
   | { ok: false; reason: string }
   | {
       ok: true;
+      model: ModelSpec;
       verdict: Verdict;
       points: LetteredPoint[];
       cycles: LimitCycle[];
@@ -50,6 +51,7 @@ export function preview({ question, content, window }: PreviewQuestion): Preview
   });
   return {
     ok: true,
+    model,
     verdict: verdict(question, report, { model, cycles }),
     points: pointsOf(report),
     cycles,
