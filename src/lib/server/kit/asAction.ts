@@ -26,8 +26,8 @@ function refusedOr(event: RequestEvent, thrown: unknown): AppError {
   return refused;
 }
 
-/** An action without fields of its own: a refusal becomes `fail(status, { problem })`. */
-export function asAction<E extends RequestEvent, T extends Record<string, unknown> | void>(
+/** An action that reads its own fields, or none: a refusal becomes `fail(status, { problem })`; `fn` may return a failure of its own. */
+export function asAction<E extends RequestEvent, T>(
   fn: (event: E, context: Context) => T | Promise<T>
 ): (event: E) => Promise<T | ActionFailure<{ problem: ActionProblem }>> {
   return async (event) => {
