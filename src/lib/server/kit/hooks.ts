@@ -7,6 +7,7 @@ import { config } from '../config';
 import { isDatabaseAway } from '../db/connection';
 import { log } from '../log';
 import { startUp } from '../startUp';
+import { settleAddress } from './settleAddress';
 import { unavailableResponse } from './unavailable';
 
 export const THEME_COOKIE = 'theme';
@@ -91,7 +92,7 @@ const signIn: Handle = async ({ event, resolve }) => {
   return resolve(event);
 };
 
-export const handle: Handle = sequence(identify, secure, theme, survive, signIn);
+export const handle: Handle = sequence(identify, secure, settleAddress, theme, survive, signIn);
 
 /** Faults: logged with the request's id; the person sees a plain sentence and that id. */
 export const handleError: HandleServerError = ({ error, event, status }) => {
