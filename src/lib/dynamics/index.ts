@@ -17,4 +17,12 @@ export * from './analysis/sensitivity';
 export * from './analysis/isoclines';
 export * from './analysis/vectorField';
 export { parametersOf, symbolOf, withParameter, type ModelParameter } from './model/parameters';
+export * from './model/equations';
+export {
+  differentiate as differentiateExpression,
+  evaluate as evaluateExpression,
+  toLatex,
+  type Expression,
+  type PrintOptions
+} from './model/expression';
 export { ENGINE_VERSION } from './version';

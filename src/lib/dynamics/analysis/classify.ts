@@ -65,7 +65,8 @@ function linearPart(j: Matrix, over: IntervalMatrix | null): Linear {
       traceIsZero: near(trace, s, ROUNDING),
       determinantIsZero: near(determinant, s * s, ROUNDING),
       discriminantIsZero: near(discriminant, s * s, ROUNDING),
-      isScalar: near(a - d, s, ROUNDING) && near(b * c, s * s, ROUNDING ** 2),
+      // A single off-diagonal entry has no scale of its own: only its absence makes a multiple of the identity.
+      isScalar: near(a - d, s, ROUNDING) && b === 0 && c === 0,
       nearBorder
     };
   }
