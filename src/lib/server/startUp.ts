@@ -1,7 +1,9 @@
 /** What must be done once before the first request: reach the database, bring its tables up to date, seed, take mail. */
 import { setTimeout as sleep } from 'node:timers/promises';
 import { sweepSessions } from './auth/sessions';
+import { purgeDeletedStudies } from './commands/deleteStudy';
 import { config, type Config } from './config';
+import { systemContext } from './context';
 import { asRefusal, closeDatabase, isDatabaseAway, pingDatabase, sequelize } from './db/connection';
 import { migrate } from './db/migrate';
 import { AppError } from './errors';
@@ -44,6 +46,7 @@ export async function startUp(): Promise<void> {
   const applied = await migrate(sequelize());
   if (applied.length) log().info({ applied }, 'migrated');
   await sweepSessions();
+  await purgeDeletedStudies(systemContext());
   if (settings.smtpUrl === null) await startMailbox();
   stopWithTheServer();
   if (!settings.seed) return;

@@ -4,7 +4,7 @@ import type { Context } from '../context';
 import { Comment } from '../db/models/Comment';
 import { Thread } from '../db/models/Thread';
 import { withTransaction } from '../db/transaction';
-import { openStudy, readRevision, requireOpen } from '../studies/access';
+import { openStudy, readRevision, requireLiving, requireOpen } from '../studies/access';
 import { parseInput } from '../studies/parseInput';
 import { quoteAnchor } from '../studies/quoteAnchor';
 import { refreshParts } from '../studies/refreshParts';
@@ -25,6 +25,7 @@ export async function openThread(
   return withTransaction(async (transaction) => {
     // The study's row is the queue in which two new threads get different numbers.
     await study.reload({ transaction, lock: transaction.LOCK.UPDATE });
+    requireLiving(study);
     const last = await Thread.max<number | null, Thread>('number', { where: { studyId: study.id }, transaction });
     const thread = await Thread.create(
       {

@@ -3,7 +3,7 @@ import { recordAudit } from '../audit/record';
 import type { Context } from '../context';
 import { Reading } from '../db/models/Reading';
 import { withTransaction } from '../db/transaction';
-import { openStudy, readRevision, requireOpen } from '../studies/access';
+import { openStudy, readRevision, requireLiving, requireOpen } from '../studies/access';
 import { inputsFingerprint } from '../studies/fingerprint';
 import { listFields } from '../studies/listFields';
 import { parseInput } from '../studies/parseInput';
@@ -32,6 +32,7 @@ export async function recordReading(
   const fingerprint = inputsFingerprint(part, question, content);
   await withTransaction(async (transaction) => {
     await study.reload({ transaction, lock: transaction.LOCK.UPDATE });
+    requireLiving(study);
     const reading = await Reading.create(
       {
         studyId: study.id,

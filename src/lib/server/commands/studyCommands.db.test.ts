@@ -16,7 +16,7 @@ import { AppError } from '../errors';
 import { archiveStudy, restoreStudy } from './archiveStudy';
 import { changeShare } from './changeShare';
 import { createStudy } from './createStudy';
-import { deleteStudy, undeleteStudy } from './deleteStudy';
+import { deleteStudy, KEEP_DELETED_DAYS, purgeDeletedStudies, undeleteStudy } from './deleteStudy';
 import { duplicateStudy } from './duplicateStudy';
 import { openThread } from './openThread';
 import { recordReading } from './recordReading';
@@ -261,6 +261,18 @@ describe('createStudy', () => {
   });
 });
 
+describe('text that cannot be kept', () => {
+  it('is refused by its path: a zero character and half of a pair', async () => {
+    for (const title of ['Newts\u0000', 'Newts \ud83d']) {
+      const refusal = await refused(createStudy(team.owner.context, { question: { ...competitionQuestion, title } }));
+      expect([refusal.status, refusal.issues.map(({ path }) => path)]).toEqual([422, ['question.title']]);
+    }
+    const rate = typedRate('first.growth.r', 0.8, '/a', { note: 'a\u0000b' });
+    const refusal = await refused(saveRate(team.owner.context, { studyId, revision, rate }));
+    expect(refusal.issues.map(({ path }) => path)).toEqual(['rate.note']);
+  });
+});
+
 describe('a save', () => {
   it('makes a revision that says what changed, and leaves the one before untouched', async () => {
     const { owner } = team;
@@ -365,6 +377,22 @@ describe('undo', () => {
     await undeleteStudy(owner.context, study);
     expect(await StudyRevision.count({ where: { studyId: study.studyId } })).toBe(study.revision);
     await archiveStudy(administrator.context, study);
+  });
+});
+
+describe('purgeDeletedStudies', () => {
+  it('removes what was deleted more than thirty days ago, and nothing else; the audit stays', async () => {
+    const gone = await buildStudy(team.owner.context);
+    const kept = await buildStudy(team.owner.context);
+    await deleteStudy(team.owner.context, gone);
+    const after = (days: number) => systemContext(null, () => new Date(Date.now() + days * 86_400_000));
+    expect(await purgeDeletedStudies(after(KEEP_DELETED_DAYS - 1))).toBe(0);
+    expect(await purgeDeletedStudies(after(KEEP_DELETED_DAYS + 1))).toBe(1);
+    expect(await Study.findByPk(gone.studyId)).toBeNull();
+    expect(await StudyRevision.count({ where: { studyId: gone.studyId } })).toBe(0);
+    expect(await Study.findByPk(kept.studyId)).not.toBeNull();
+    const acts = (await AuditEvent.findAll({ where: { studyId: gone.studyId } })).map(({ act }) => act);
+    expect(acts).toEqual(expect.arrayContaining(['study.create', 'study.delete', 'study.purge']));
   });
 });
 

@@ -87,7 +87,8 @@ export async function studyList(context: Context, query: Partial<StudyListQuery>
   const actor = requireActor(context.actor);
   const asked = StudyListQuery.parse(query);
   const { workspaceIds, ownWorkspaceIds, userId } = readableStudies(actor);
-  const words = [...new Set(asked.q.toLowerCase().split(/\s+/).filter(Boolean))].slice(0, 12);
+  // A zero character cannot be in any text that is kept, nor be asked of the database.
+  const words = [...new Set(asked.q.replaceAll('\0', '').toLowerCase().split(/\s+/).filter(Boolean))].slice(0, 12);
   const [answer] = await sequelize().query<{ answer: Answer }>(statement(asked.sort), {
     type: QueryTypes.SELECT,
     bind: [

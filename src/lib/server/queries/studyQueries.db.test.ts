@@ -269,6 +269,7 @@ describe('studyList', () => {
     expect(await titles({ q: 'salamandridae' })).toEqual(['Birch lake', 'Ash pond']);
     expect(await titles({ q: "o'); drop table studies; --" })).toEqual([]);
     expect(await titles({ q: '100%' })).toEqual([]);
+    expect(await titles({ q: 'birch\u0000' })).toEqual(['Birch lake']);
     expect(await titles({ kind: 'consumer-resource' })).toEqual(['Cedar bank']);
     await archiveStudy(context, ash);
     expect(await titles({})).toEqual(['Cedar bank', 'Birch lake']);

@@ -61,6 +61,12 @@ export function abilitiesNow(abilities: readonly StudyAct[], state: Study['state
   return abilities.filter((act) => (state === 'archived' ? !CHANGING.includes(act) : act !== 'study.restore'));
 }
 
+/** Throws where the study was deleted or archived since it was opened. Call on a row that is locked. */
+export function requireLiving(study: Study): void {
+  if (study.deletedAt !== null) throw refusal('study.notFound');
+  requireOpen(study);
+}
+
 /** Throws 409 where the study is archived. Call after authorisation, so that an outsider learns nothing. */
 export function requireOpen(study: Study): void {
   if (study.state === 'archived') throw refusal('study.archived');

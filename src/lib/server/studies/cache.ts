@@ -7,8 +7,11 @@ export class ResultCache<T> {
 
   constructor(private readonly size: number) {}
 
-  /** The value for the key, computed on first use. A computation that throws is not kept. */
-  get(key: string, compute: () => T): T {
+  /**
+   * The value for the key, computed on first use. A computation that throws is not kept, nor is one of which `keep` says
+   * that another day's answer may be better, such as one that ran out of time.
+   */
+  get(key: string, compute: () => T, keep: (value: T) => boolean = () => true): T {
     const found = this.held.get(key);
     if (found !== undefined) {
       this.held.delete(key);
@@ -16,6 +19,7 @@ export class ResultCache<T> {
       return found;
     }
     const value = compute();
+    if (!keep(value)) return value;
     this.held.set(key, value);
     if (this.held.size > this.size) {
       const oldest = this.held.keys().next();

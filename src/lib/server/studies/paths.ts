@@ -17,7 +17,7 @@ const cache = new ResultCache<Path[]>(12);
 /** The path from every start, each checked by a second method. All of them together have the time of one answer. */
 export function pathsFor(model: ModelSpec, starts: readonly Start[], run: RunSettings): Path[] {
   const key = fingerprintOf({ model, starts, run });
-  return cache.get(key, () => {
+  const follow = (): Path[] => {
     const shouldStop = deadline(ANSWER_MS);
     return starts.map((start) => {
       const result = simulate(model, {
@@ -38,5 +38,7 @@ export function pathsFor(model: ModelSpec, starts: readonly Start[], run: RunSet
           : { method: 'odex', largestRelativeDifference: null, reason: 'The run did not reach its end.' }
       };
     });
-  });
+  };
+  const isFinal = ({ result: { outcome } }: Path) => outcome.status !== 'failed' || outcome.reason !== 'budget';
+  return cache.get(key, follow, (paths) => paths.every(isFinal));
 }

@@ -70,9 +70,11 @@ export function outcomeToday(content: StudyContent, model: ModelSpec): Outcome |
   const [today] = content.starts;
   if (!today || (today.x === 0 && today.y === 0)) return null;
   const { x, y } = today;
-  return ends.get(fingerprintOf({ model, x, y }), () => {
+  const isLate = deadline(500);
+  const follow = () => {
     const { report, cycles } = resultsOf(model);
-    const end = outcomeFrom(model, report, { x, y }, { cycles, shouldStop: deadline(500) });
+    const end = outcomeFrom(model, report, { x, y }, { cycles, shouldStop: isLate });
     return { outcome: outcomeOf(end, report, model) };
-  }).outcome;
+  };
+  return ends.get(fingerprintOf({ model, x, y }), follow, ({ outcome }) => outcome !== null || !isLate()).outcome;
 }

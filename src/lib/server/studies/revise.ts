@@ -9,7 +9,7 @@ import { StudyRevision } from '../db/models/StudyRevision';
 import { User } from '../db/models/User';
 import { withTransaction } from '../db/transaction';
 import { invalid, refusal } from '../errors';
-import { openStudy, readRevision, requireOpen } from './access';
+import { openStudy, readRevision, requireLiving, requireOpen } from './access';
 import { changesBetween, summaryOf } from './changes';
 import { fingerprintOf } from './fingerprint';
 import { listFields } from './listFields';
@@ -62,6 +62,7 @@ export async function revise(context: Context, edit: Edit): Promise<Saved> {
 
   return withTransaction(async (transaction) => {
     await study.reload({ transaction, lock: transaction.LOCK.UPDATE });
+    requireLiving(study);
     if (study.revision !== base.number)
       throw await overtaken(study, await readRevision(study, undefined, transaction), base.number, transaction);
     const number = base.number + 1;
