@@ -90,7 +90,8 @@ export async function acceptInvitation(context: Context, token: string, person: 
     const { studyId, studyRole, workspaceId } = invitation;
     if (studyId && studyRole) {
       const actor = await loadActor(user.id, context.actor?.via ?? 'session', undefined, transaction);
-      await grantShare({ ...context, actor }, transaction, { studyId, userId: user.id, role: studyRole });
+      const sharedById = invitation.invitedById;
+      await grantShare({ ...context, actor }, transaction, { studyId, userId: user.id, role: studyRole, sharedById });
     }
     await recordAudit(context, transaction, {
       act: 'invitation.accept',
