@@ -279,7 +279,7 @@ class Collector implements Search {
     const { along, top, bottom } = elimination;
     const found = this.certified(elimination, place.value);
     const range = found && (along === 'first' ? found.box.x : found.box.y);
-    if (found && range && range.lo <= place.hi && range.hi >= place.lo) {
+    if (found && range && range.lo <= place.hi && range.hi >= place.lo && !this.isListed(found.box)) {
       this.accept(found.x, found.y, 1, found.box);
       return;
     }
@@ -295,11 +295,18 @@ class Collector implements Search {
     this.accept(x, y, 1, Number.isFinite(u.lo) && Number.isFinite(u.hi) ? box : null);
   }
 
+  /** Boxes that meet hold the same root: two starts have led to one. */
+  private isListed(box: CertifiedBox): boolean {
+    return this.points.some((other) => other.box && other.x !== 0 && other.y !== 0 && !disjoint(other.box, box));
+  }
+
   /** A point off the axes in the algebra; it may still lie on one, or beyond. */
   private accept(x: number, y: number, multiplicity: number, box: CertifiedBox | null): void {
     if (box) {
-      // Two starts can lead to one root; its boxes then meet.
-      if (this.points.some((other) => other.box && other.x !== 0 && other.y !== 0 && !disjoint(other.box, box))) return;
+      if (this.isListed(box)) {
+        this.doubts.push('two places led to one equilibrium');
+        return;
+      }
       const onFirstAxis = contains(box.y, 0) && this.takesSecondByHead;
       const onSecondAxis = contains(box.x, 0) && this.takesFirstByHead;
       if (onFirstAxis || onSecondAxis) {
@@ -332,7 +339,7 @@ class Collector implements Search {
       if (isNew) apart.push(found);
     }
     if (apart.length > 1) {
-      apart.forEach((found) => this.accept(found.x, found.y, 1, found.box));
+      apart.filter(({ box }) => !this.isListed(box)).forEach((found) => this.accept(found.x, found.y, 1, found.box));
       if (apart.length < place.atMost) this.doubts.push('more equilibria may be merged in one place');
       return;
     }
