@@ -18,3 +18,8 @@ export * from './uncertainty';
 export * from './parts';
 export * from './planeFor';
 export * from './placeholderModel';
+export * from './typedNumber';
+export * from './questionForm';
+export * from './rateForm';
+export * from './structureForm';
+export * from './runForm';

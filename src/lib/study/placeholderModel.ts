@@ -1,4 +1,4 @@
-import type { ModelStructure } from '../contracts/content';
+import type { ModelStructure } from '$lib/contracts/content';
 import type { ConsumerSpec, GrowthSpec, ManagedSpec, ModelSpec } from '$lib/dynamics';
 
 /**

@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { StudyQuestion } from '../contracts/study';
+import { StudyQuestion } from '$lib/contracts/study';
 import { typedNumber } from './typedNumber';
 
 /** The question as a form posts it: text throughout, so that whatever was typed comes back as it was typed. */

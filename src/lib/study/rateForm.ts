@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { RateEntry, sourceKinds, type RatePath } from '../contracts/content';
+import { RateEntry, sourceKinds, type RatePath } from '$lib/contracts/content';
 import { typedNumber } from './typedNumber';
 
 /** One rate as a form posts it: text throughout, so that whatever was typed comes back as it was typed. */

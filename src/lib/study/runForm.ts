@@ -1,4 +1,4 @@
-import type { RunSettings, Start } from '../contracts/content';
+import type { RunSettings, Start } from '$lib/contracts/content';
 import { typedNumber } from './typedNumber';
 
 /** Starting states and run settings as forms post them: text, one row a start, kept as typed when something is refused. */

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { ModelStructure } from '../contracts/content';
+import { ModelStructure } from '$lib/contracts/content';
 import { StructureForm, readStructure, structureToForm } from './structureForm';
 
 describe('the structure form', () => {

@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import type { ModelStructure } from '../contracts/content';
+import type { ModelStructure } from '$lib/contracts/content';
 
 /** The structure of a model as a form posts it; a box that is not ticked is not posted. */
 const ticked = z.union([z.boolean(), z.string().transform((v) => v === 'on' || v === 'true')]).default(false);

@@ -1,8 +1,7 @@
 import type { StudyContent } from '$lib/contracts/content';
 import type { StudyQuestion } from '$lib/contracts/study';
 import { findEquilibria, limitCycles, simulate, type LimitCycle, type ModelSpec } from '$lib/dynamics';
-import { assemble, pointsOf, verdict, type LetteredPoint, type Verdict } from '$lib/study';
-import { planeFor, type PlaneResults } from '$lib/study';
+import { assemble, pointsOf, verdict, type LetteredPoint, type Verdict, planeFor, type PlaneResults } from '$lib/study';
 
 /** What a slider asks: the study with one rate moved, in study units. */
 export interface PreviewQuestion {

@@ -1,5 +1,5 @@
 import { abundanceUnits, areaUnits, timeUnits } from '$lib/contracts/study';
-import { displayUnit } from '$lib/study/units';
+import { displayUnit } from '$lib/study';
 
 /** What people choose from, in the order in which it is most often chosen. */
 export const timeUnitChoices = [

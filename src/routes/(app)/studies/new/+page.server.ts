@@ -3,7 +3,7 @@ import { setError } from 'sveltekit-superforms';
 import { createStudy } from '$lib/server/commands/createStudy';
 import { asFormAction, emptyForm } from '$lib/server/kit/asAction';
 import { asLoad } from '$lib/server/kit/asLoad';
-import { QuestionForm, readQuestion } from '$lib/study/questionForm';
+import { QuestionForm, readQuestion } from '$lib/study';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = asLoad(async () => ({ form: await emptyForm(QuestionForm) }));

@@ -4,7 +4,7 @@ import { saveStructure } from '$lib/server/commands/saveStructure';
 import { asAction, asFormAction, emptyForm } from '$lib/server/kit/asAction';
 import { asLoad } from '$lib/server/kit/asLoad';
 import { studyModel } from '$lib/server/queries/studyModel';
-import { StructureForm, readStructure, structureToForm } from '$lib/study/structureForm';
+import { StructureForm, readStructure, structureToForm } from '$lib/study';
 import { ModelStructure } from '$lib/contracts/content';
 import type { Actions, PageServerLoad } from './$types';
 

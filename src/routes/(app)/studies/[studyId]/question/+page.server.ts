@@ -4,7 +4,7 @@ import { saveQuestion } from '$lib/server/commands/saveQuestion';
 import { asFormAction, emptyForm } from '$lib/server/kit/asAction';
 import { asLoad } from '$lib/server/kit/asLoad';
 import { studyOverview } from '$lib/server/queries/studyOverview';
-import { QuestionForm, questionToForm, readQuestion } from '$lib/study/questionForm';
+import { QuestionForm, questionToForm, readQuestion } from '$lib/study';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = asLoad(async (event, context) => {

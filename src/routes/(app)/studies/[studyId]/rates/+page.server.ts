@@ -7,7 +7,7 @@ import { AppError } from '$lib/server/errors';
 import { asAction, asFormAction, emptyForm } from '$lib/server/kit/asAction';
 import { asLoad } from '$lib/server/kit/asLoad';
 import { studyRates } from '$lib/server/queries/studyRates';
-import { RateForm, rateField, rateToForm, readRate } from '$lib/study/rateForm';
+import { RateForm, rateField, rateToForm, readRate } from '$lib/study';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = asLoad(async (event, context) => {

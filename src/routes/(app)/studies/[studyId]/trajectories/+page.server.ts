@@ -7,7 +7,7 @@ import { saveStarts } from '$lib/server/commands/saveStarts';
 import { asAction } from '$lib/server/kit/asAction';
 import { asLoad } from '$lib/server/kit/asLoad';
 import { studyTrajectories } from '$lib/server/queries/studyTrajectories';
-import { readRun, readStarts, runField, typedRun, typedStarts, type TypedErrors } from '$lib/study/runForm';
+import { readRun, readStarts, runField, typedRun, typedStarts, type TypedErrors } from '$lib/study';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = asLoad(async (event, context) => ({
