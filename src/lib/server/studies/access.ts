@@ -1,6 +1,4 @@
 import type { Transaction } from 'sequelize';
-import type { StudyContent } from '$lib/contracts/content';
-import type { StudyQuestion } from '$lib/contracts/study';
 import type { Actor, Context } from '../context';
 import { Study } from '../db/models/Study';
 import { StudyRevision } from '../db/models/StudyRevision';
@@ -70,12 +68,6 @@ export function requireLiving(study: Study): void {
 /** Throws 409 where the study is archived. Call after authorisation, so that an outsider learns nothing. */
 export function requireOpen(study: Study): void {
   if (study.state === 'archived') throw refusal('study.archived');
-}
-
-export interface StudyText {
-  number: number;
-  question: StudyQuestion;
-  content: StudyContent;
 }
 
 /** One revision of a study, by default the latest. Throws 404 where there is none of that number. */
