@@ -11,6 +11,7 @@ export { findEquilibria, type EquilibriaOptions } from './analysis/equilibria';
 export * from './analysis/limitCycles';
 export * from './analysis/separatrices';
 export * from './analysis/outcome';
+export { basinsOf, type Basin, type Basins } from './analysis/basins';
 export { classify, type Classification } from './analysis/classify';
 export { invasion, type Invasion } from './analysis/invasion';
 export * from './analysis/sensitivity';

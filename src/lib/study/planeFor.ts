@@ -1,8 +1,10 @@
 import {
+  basinsOf,
   isoclines,
   separatrices,
   suggestWindow,
   vectorField,
+  type Basins,
   type EquilibriaReport,
   type FieldArrow,
   type Isocline,
@@ -18,6 +20,8 @@ export interface PlaneResults {
   isoclines: Isocline[];
   separatrices: Separatrix[];
   field: FieldArrow[];
+  /** Which starts end where. */
+  basins: Basins;
 }
 
 /** Columns and rows of the direction field. */
@@ -25,22 +29,24 @@ const FIELD = 24;
 
 /**
  * Window, isoclines, divides and direction field of a model, in a window that holds its points, cycles and starts.
- * @param window keep this window instead, so that a picture does not jump while a slider moves
+ * @param options.window keep this window instead, so that a picture does not jump while a slider moves
  */
 export function planeFor(
   model: ModelSpec,
   report: EquilibriaReport,
   cycles: readonly LimitCycle[],
   starts: readonly { x: number; y: number }[],
-  window?: { xMax: number; yMax: number }
+  { window, shouldStop }: { window?: { xMax: number; yMax: number }; shouldStop?: () => boolean } = {}
 ): PlaneResults {
   const turns = cycles.map(({ xMax, yMax }) => ({ x: xMax, y: yMax }));
   const seen = starts.map(({ x, y }) => ({ x, y }));
   const frame = window ?? suggestWindow(model, report, [...seen, ...turns]);
+  const divides = separatrices(model, report, frame);
   return {
     window: frame,
     isoclines: isoclines(model, frame),
-    separatrices: separatrices(model, report, frame),
-    field: vectorField(model, frame, FIELD, FIELD)
+    separatrices: divides,
+    field: vectorField(model, frame, FIELD, FIELD),
+    basins: basinsOf(model, report, divides, cycles, frame, shouldStop ? { shouldStop } : {})
   };
 }

@@ -15,6 +15,7 @@ import {
   type LetteredPoint,
   type Outcome,
   type PointErrors,
+  type PlaneResults,
   type PointParagraph,
   type RareGrowth,
   type RateNeed
@@ -28,7 +29,7 @@ import { assess, type StudyVerdict } from '../studies/assess';
 import { ResultCache } from '../studies/cache';
 import { fingerprintOf } from '../studies/fingerprint';
 import { readingOf, type ReadingView } from '../studies/readingOf';
-import { outcomeToday, planeOf, resultsOf, type PlaneResults } from '../studies/results';
+import { outcomeToday, planeOf, resultsOf } from '../studies/results';
 
 export interface PointView extends LetteredPoint, PointErrors {
   /** `Both together`, `Ridge broom only`. */

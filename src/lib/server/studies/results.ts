@@ -1,20 +1,13 @@
 import type { Start, StudyContent } from '$lib/contracts/content';
 import {
   findEquilibria,
-  isoclines,
   limitCycles,
   outcomeFrom,
-  separatrices,
-  suggestWindow,
-  vectorField,
   type EquilibriaReport,
-  type FieldArrow,
-  type Isocline,
   type LimitCycle,
-  type ModelSpec,
-  type Separatrix
+  type ModelSpec
 } from '$lib/dynamics';
-import { outcomeOf, type Outcome } from '$lib/study';
+import { outcomeOf, planeFor, type Outcome, type PlaneResults } from '$lib/study';
 import { deadline } from '../numerics/deadline';
 import { ResultCache } from './cache';
 import { fingerprintOf } from './fingerprint';
@@ -23,15 +16,6 @@ import { fingerprintOf } from './fingerprint';
 export interface ModelResults {
   report: EquilibriaReport;
   cycles: LimitCycle[];
-}
-
-/** Everything drawn on the state plane that follows from the model and the starts. */
-export interface PlaneResults {
-  /** From 0, 0 to here. */
-  window: { xMax: number; yMax: number };
-  isoclines: Isocline[];
-  separatrices: Separatrix[];
-  field: FieldArrow[];
 }
 
 const models = new ResultCache<ModelResults>(64);
@@ -46,23 +30,15 @@ export function resultsOf(model: ModelSpec): ModelResults {
   });
 }
 
-/** Columns and rows of the direction field that is kept; a page may sample its own. */
-const FIELD = 24;
-
 /** Window, isoclines, divides and direction field of a model, in a window that holds its starts as well. */
 export function planeOf(model: ModelSpec, starts: readonly Start[]): PlaneResults {
   const seen = starts.map(({ x, y }) => ({ x, y }));
-  return planes.get(fingerprintOf({ model, seen }), () => {
+  const isLate = deadline(500);
+  const draw = () => {
     const { report, cycles } = resultsOf(model);
-    const turns = cycles.map(({ xMax, yMax }) => ({ x: xMax, y: yMax }));
-    const window = suggestWindow(model, report, [...seen, ...turns]);
-    return {
-      window,
-      isoclines: isoclines(model, window),
-      separatrices: separatrices(model, report, window),
-      field: vectorField(model, window, FIELD, FIELD)
-    };
-  });
+    return planeFor(model, report, cycles, seen, { shouldStop: isLate });
+  };
+  return planes.get(fingerprintOf({ model, seen }), draw, () => !isLate());
 }
 
 /** Where today's counts end up; null where there are none, or where their path does not say. */

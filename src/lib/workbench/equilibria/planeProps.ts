@@ -2,6 +2,7 @@ import type { Start } from '$lib/contracts/content';
 import type { StudyQuestion } from '$lib/contracts/study';
 import { compile, type Continuum, type LimitCycle, type ModelSpec } from '$lib/dynamics';
 import { equilibriumLook } from '$lib/charts/planeHelpers';
+import type { PlaneBasin } from '$lib/charts/types';
 import type { PlaneData } from '$lib/charts/planeLayout';
 import { displayUnit, pointTitle, sentenceCase, type LetteredPoint, type PlaneResults } from '$lib/study';
 import { shortNames } from '../shortNames';
@@ -51,6 +52,7 @@ export function planeProps({ question, model, points, continua, cycles, plane, p
       stable: c.stability === 'stable' ? true : c.stability === 'unstable' ? false : null,
       label: 'rest anywhere here'
     })),
+    basins: basinsShown(plane, points),
     separatrices: plane.separatrices.filter((s) => s.kind === 'stable').map(({ points: line }) => ({ points: line })),
     cycles: cycles.map((c) => ({ points: c.points, stable: c.stability === 'stable', label: 'the cycle' })),
     trajectories: paths.map((path, i) => ({
@@ -71,6 +73,19 @@ export function planeProps({ question, model, points, continua, cycles, plane, p
       : [],
     starts: starts.slice(1).map(({ x, y, label }) => ({ x, y, label }))
   };
+}
+
+/** Basins tinted by who is left, and where they end in the letters of the table; ends that nobody can name stay blank. */
+function basinsShown(plane: PlaneResults, points: readonly LetteredPoint[]): PlaneBasin[] {
+  return plane.basins.basins.flatMap(({ end, polygons }) => {
+    if (end.kind === 'cycle') return [{ tint: 'cycles' as const, polygons, label: 'ends on the cycle' }];
+    const point = points.find(
+      ({ equilibrium, absorbing, index }) =>
+        index === end.index && (end.kind === 'equilibrium' ? equilibrium !== null : absorbing !== null)
+    );
+    const named = point && (end.kind === 'equilibrium' || end.kind === 'absorbing');
+    return named ? [{ tint: point.who, polygons, label: `ends at ${point.letter}` }] : [];
+  });
 }
 
 /** Direction of change anywhere, for the chart to sample at the width it is drawn. */

@@ -54,7 +54,7 @@ export function preview({ question, content, window }: PreviewQuestion): Preview
     verdict: verdict(question, report, { model, cycles }),
     points: pointsOf(report),
     cycles,
-    plane: planeFor(model, report, cycles, content.starts, window),
+    plane: planeFor(model, report, cycles, content.starts, window ? { window } : {}),
     paths,
     complete: report.complete
   };
