@@ -77,8 +77,8 @@ export function planeProps({ question, model, points, continua, cycles, plane, p
 
 /** Basins tinted by who is left, and where they end in the letters of the table; ends that nobody can name stay blank. */
 function basinsShown(plane: PlaneResults, points: readonly LetteredPoint[]): PlaneBasin[] {
-  return plane.basins.basins.flatMap(({ end, polygons }) => {
-    if (end.kind === 'cycle') return [{ tint: 'cycles' as const, polygons, label: 'ends on the cycle' }];
+  return plane.basins.basins.flatMap(({ end, polygons }): PlaneBasin[] => {
+    if (end.kind === 'cycle') return [{ tint: 'cycles', polygons, label: 'ends on the cycle' }];
     const point = points.find(
       ({ equilibrium, absorbing, index }) =>
         index === end.index && (end.kind === 'equilibrium' ? equilibrium !== null : absorbing !== null)
