@@ -62,6 +62,7 @@ export interface RefusalOptions {
   message?: string;
   issues?: FieldIssue[];
   retryAfterSeconds?: number;
+  latestRevision?: number;
   cause?: unknown;
 }
 
@@ -69,6 +70,8 @@ export interface RefusalOptions {
 export class AppError extends Error {
   readonly issues: FieldIssue[];
   readonly retryAfterSeconds: number | null;
+  /** The revision that a form must name to be saved after all, where somebody saved in between. */
+  readonly latestRevision: number | null;
 
   constructor(
     readonly code: ErrorCode,
@@ -80,6 +83,7 @@ export class AppError extends Error {
     this.name = 'AppError';
     this.issues = options.issues ?? [];
     this.retryAfterSeconds = options.retryAfterSeconds ?? null;
+    this.latestRevision = options.latestRevision ?? null;
   }
 }
 

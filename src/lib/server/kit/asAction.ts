@@ -104,6 +104,8 @@ function refuseForm(form: AnyForm, refused: AppError): ActionFailure<{ form: Any
     placed += 1;
   }
   form.valid = false;
+  // Whoever has read what was saved meanwhile may press the same button again: nothing they typed has to be typed twice.
+  if (refused.latestRevision !== null && 'revision' in form.data) form.data.revision = String(refused.latestRevision);
   if (placed === 0 || placed < refused.issues.length) message(form, { tone: 'error', text: refused.message });
   return fail(refused.status, { form });
 }

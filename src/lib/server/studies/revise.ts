@@ -99,6 +99,7 @@ async function overtaken(study: Study, latest: StudyRevision, from: number, tran
   const changes: Change[] = old ? changesBetween(old, latest) : [];
   const what = changes.length ? summaryOf(changes) : latest.summary;
   return refusal('study.stale', {
+    latestRevision: latest.number,
     message: `${author?.name ?? 'Somebody'} saved revision ${latest.number} after you opened revision ${from}: ${what} Look at it, then save yours again.`,
     issues: changes.map((change) => ({
       path: change.path,

@@ -14,10 +14,15 @@ export const load: PageServerLoad = asLoad(async (event, context) => ({
   view: await studyTrajectories(context, event.params.studyId)
 }));
 
-/** The complaints of a refusal by field, where it has any; anything else goes on. */
-function complaints(thrown: unknown, fieldOf: (path: string) => string = (p) => p): TypedErrors {
-  if (!(thrown instanceof AppError) || thrown.issues.length === 0) throw thrown;
-  return Object.fromEntries(thrown.issues.map((issue) => [fieldOf(issue.path), issue.message]));
+/** What goes back beside the typed text: complaints by field, or a sentence where somebody else saved in between. */
+function refused(thrown: unknown, fieldOf: (path: string) => string = (p) => p) {
+  const errors: TypedErrors = {};
+  if (!(thrown instanceof AppError)) throw thrown;
+  const { code, message, issues } = thrown;
+  if (code === 'study.stale') return { errors, problem: { code, message, issues } };
+  if (issues.length === 0) throw thrown;
+  for (const issue of issues) errors[fieldOf(issue.path)] = issue.message;
+  return { errors };
 }
 const revisionOf = (data: FormData) => Number(data.get('revision'));
 
@@ -31,7 +36,7 @@ export const actions: Actions = {
     try {
       await saveStarts(context, { studyId, revision: revisionOf(data), starts });
     } catch (thrown) {
-      return fail(422, { rows, errors: complaints(thrown) });
+      return fail(422, { rows, ...refused(thrown) });
     }
     redirect(303, `/studies/${studyId}/trajectories`);
   }),
@@ -44,7 +49,7 @@ export const actions: Actions = {
     try {
       await saveRunSettings(context, { studyId, revision: revisionOf(data), run });
     } catch (thrown) {
-      return fail(422, { typed, errors: complaints(thrown, (path) => runField(path, run)) });
+      return fail(422, { typed, ...refused(thrown, (path) => runField(path, run)) });
     }
     redirect(303, `/studies/${studyId}/trajectories`);
   }),
