@@ -6,7 +6,17 @@ import ts from 'typescript-eslint';
 import svelteConfig from './svelte.config.js';
 
 export default ts.config(
-  { ignores: ['build/', '.svelte-kit/', '.sedgeline/', 'test-results/', 'playwright-report/', 'static/', 'node_modules/'] },
+  {
+    ignores: [
+      'build/',
+      '.svelte-kit/',
+      '.sedgeline/',
+      'test-results/',
+      'playwright-report/',
+      'static/',
+      'node_modules/'
+    ]
+  },
   js.configs.recommended,
   ...ts.configs.recommended,
   ...svelte.configs.recommended,
@@ -24,7 +34,9 @@ export default ts.config(
   },
   {
     files: ['**/*.svelte', '**/*.svelte.ts'],
-    languageOptions: { parserOptions: { projectService: true, extraFileExtensions: ['.svelte'], parser: ts.parser, svelteConfig } },
+    languageOptions: {
+      parserOptions: { projectService: true, extraFileExtensions: ['.svelte'], parser: ts.parser, svelteConfig }
+    },
     rules: { 'svelte/no-navigation-without-resolve': 'off' }
   },
   {

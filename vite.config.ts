@@ -14,7 +14,12 @@ export default defineConfig({
         test: {
           name: 'unit',
           environment: 'node',
-          include: ['src/**/*.test.ts', 'tests/*.test.ts', 'tests/reference/**/*.test.ts', 'tests/properties/**/*.test.ts'],
+          include: [
+            'src/**/*.test.ts',
+            'tests/*.test.ts',
+            'tests/reference/**/*.test.ts',
+            'tests/properties/**/*.test.ts'
+          ],
           exclude: ['src/**/*.db.test.ts'],
           testTimeout: 60_000
         }

@@ -6,9 +6,12 @@ import { expectEquilibria, type EquilibriaCase } from './expectEquilibria';
 const cases = reference.cases as EquilibriaCase[];
 
 describe('equilibria with exact answers', () => {
-  it.each(cases.map(testCase => [testCase.id, testCase.title, testCase] as const))('%s %s', (_id, _title, testCase) => {
-    expectEquilibria(testCase);
-  });
+  it.each(cases.map((testCase) => [testCase.id, testCase.title, testCase] as const))(
+    '%s %s',
+    (_id, _title, testCase) => {
+      expectEquilibria(testCase);
+    }
+  );
 
   it('reports a line of equilibria by its two ends', () => {
     const testCase = cases.find(({ line }) => line !== undefined)!;
@@ -22,13 +25,13 @@ describe('equilibria with exact answers', () => {
     expect(continua[0]!.stability).toBe('stable');
   });
 
-  it.each(cases.filter(({ infeasible }) => infeasible.length > 0).map(testCase => [testCase.id, testCase] as const))(
+  it.each(cases.filter(({ infeasible }) => infeasible.length > 0).map((testCase) => [testCase.id, testCase] as const))(
     'lists real solutions with a negative abundance on request: %s',
     (_id, testCase) => {
       const report = findEquilibria(testCase.document as ModelSpec, { includeInfeasible: true });
       for (const [x, y] of testCase.infeasible) {
         const scale = Math.hypot(x!, y!);
-        const match = report.equilibria.find(found => Math.hypot(found.x - x!, found.y - y!) < 1e-9 * scale);
+        const match = report.equilibria.find((found) => Math.hypot(found.x - x!, found.y - y!) < 1e-9 * scale);
         expect(match?.feasible).toBe(false);
       }
     }

@@ -28,9 +28,7 @@ function expectedClass(expected: ExpectedEquilibrium): string {
   if (expected.class.startsWith('centre')) {
     return expected.nonlinearBehaviour?.startsWith('true nonlinear centre') ? 'centre' : 'non-hyperbolic';
   }
-  return expected.class
-    .replace('star (proper node)', 'star')
-    .replace('improper (degenerate) node', 'degenerate node');
+  return expected.class.replace('star (proper node)', 'star').replace('improper (degenerate) node', 'degenerate node');
 }
 
 function expectStability(found: Equilibrium, expected: ExpectedEquilibrium): void {
@@ -51,7 +49,7 @@ export function expectEquilibria(
   testCase: EquilibriaCase,
   report: EquilibriaReport = findEquilibria(testCase.document as ModelSpec)
 ): void {
-  const wanted = testCase.equilibria.filter(expected => expected.onCurve !== true);
+  const wanted = testCase.equilibria.filter((expected) => expected.onCurve !== true);
   expect(report.equilibria.map(({ x, y }) => [x, y])).toHaveLength(testCase.isolated);
   expect(report.complete, report.completeness).toBe(true);
   wanted.forEach((expected, i) => {
