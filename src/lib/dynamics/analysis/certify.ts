@@ -3,6 +3,8 @@ import { dualRing, type Dual } from '../numeric/dual';
 import {
   add,
   contains,
+  distanceToZero,
+  divide,
   INTERVAL,
   interval,
   middle,
@@ -15,7 +17,7 @@ import {
   type Interval
 } from '../numeric/interval';
 import { REAL } from '../numeric/ring';
-import { mapCoefficients, rates, reducedEquations } from './elimination';
+import { mapCoefficients, perHeadRates, rates, reducedEquations } from './elimination';
 
 const realDuals = dualRing(REAL);
 const intervalDuals = dualRing(INTERVAL);
@@ -114,14 +116,54 @@ export function certifyBox(lifted: Lifted, x: number, y: number): CertifiedBox |
   return null;
 }
 
-/** Encloses the Jacobian of the rates over a box, row by row; leslie growth needs x away from 0 or y = 0. */
-export function jacobianOver(lifted: Lifted, x: Interval, y: Interval): [Interval, Interval, Interval, Interval] {
-  const { intervalDual } = lifted;
+/** What is known for certain about the linear part at an equilibrium. */
+export interface LinearEnclosure {
+  /** The Jacobian of the rates, row by row. */
+  entries: [Interval, Interval, Interval, Interval];
+  /** Its determinant where that can be had more closely than from the entries, else null. */
+  determinant: Interval | null;
+}
+
+const meet = (a: Interval, b: Interval): Interval => {
+  const [lo, hi] = [Math.max(a.lo, b.lo), Math.min(a.hi, b.hi)];
+  return lo <= hi ? { lo, hi } : a;
+};
+
+/**
+ * Encloses the Jacobian at an equilibrium that lies in a box; leslie growth needs x away from 0 or y = 0.
+ *
+ * Where a species is present, growth per head is exactly -s/n, so that its row is n times the slopes of growth per head
+ * (and -s/n on the diagonal): terms that cancel at rest, and would hide a weak trace in their rounding, do not appear.
+ */
+export function jacobianOver(lifted: Lifted, x: Interval, y: Interval): LinearEnclosure {
+  const { intervalDual, interval: plain } = lifted;
   // On y = 0 the ceiling term and its slopes are nothing at any x.
   const onAxis = y.lo === 0 && y.hi === 0;
   const k = onAxis ? { ...intervalDual, leslie: intervalDuals.zero } : intervalDual;
-  const [f1, f2] = rates(intervalDuals, k, { v: x, dx: ONE, dy: ZERO }, { v: y, dx: ZERO, dy: ONE });
-  return [f1.dx, f1.dy, f2.dx, f2.dy];
+  const at: [Dual<Interval>, Dual<Interval>] = [
+    { v: x, dx: ONE, dy: ZERO },
+    { v: y, dx: ZERO, dy: ONE }
+  ];
+  const [f1, f2] = rates(intervalDuals, k, ...at);
+  const entries: LinearEnclosure['entries'] = [f1.dx, f1.dy, f2.dx, f2.dy];
+  const hasFirst = distanceToZero(x) > 0;
+  const hasSecond = distanceToZero(y) > 0;
+  if (!hasFirst && !hasSecond) return { entries, determinant: null };
+  const [g1, g2] = perHeadRates(intervalDuals, k, ...at);
+  if (hasFirst) {
+    entries[0] = meet(entries[0], subtract(multiply(x, g1.dx), divide(plain.s1, x)));
+    entries[1] = meet(entries[1], multiply(x, g1.dy));
+  }
+  if (hasSecond) {
+    entries[2] = meet(entries[2], multiply(y, g2.dx));
+    entries[3] = meet(entries[3], subtract(multiply(y, g2.dy), divide(plain.s2, y)));
+  }
+  const bare = INTERVAL.isZero(plain.s1) && INTERVAL.isZero(plain.s2);
+  const determinant =
+    bare && hasFirst && hasSecond
+      ? multiply(multiply(x, y), subtract(multiply(g1.dx, g2.dy), multiply(g1.dy, g2.dx)))
+      : null;
+  return { entries, determinant };
 }
 
 /**

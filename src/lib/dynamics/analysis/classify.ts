@@ -1,12 +1,21 @@
-import { add, contains, distanceToZero, interval, multiply, subtract, type Interval } from '../numeric/interval';
+import {
+  add,
+  contains,
+  distanceToZero,
+  interval,
+  middle,
+  multiply,
+  subtract,
+  type Interval
+} from '../numeric/interval';
 import { coefficientsOf } from '../model/coefficients';
 import type { ModelSpec } from '../model/spec';
 import { REAL } from '../numeric/ring';
+import type { LinearEnclosure } from './certify';
 import { centreManifold, firstLyapunov, higherTerms, signOfWeighed, type CentreManifold } from './normalForm';
 import type { Complex, DecidedBy, Equilibrium, EquilibriumClass, Stability } from './results';
 
 type Matrix = readonly [number, number, number, number];
-type IntervalMatrix = readonly [Interval, Interval, Interval, Interval];
 
 /** What classify adds to a point. */
 export type Classification = Pick<
@@ -42,12 +51,14 @@ const ROUNDING = 1e-13;
 /** Within this share of its own scale a quantity could change sign with the last digits of a rate. */
 const BORDER = 1e-9;
 
-function linearPart(j: Matrix, over: IntervalMatrix | null): Linear {
+function linearPart(j: Matrix, over: LinearEnclosure | null): Linear {
   const [a, b, c, d] = j;
   // s is the same in whatever unit each population is counted.
   const s = Math.abs(a) + Math.abs(d) + Math.sqrt(Math.abs(b * c));
   const trace = a + d;
-  const determinant = a * d - b * c;
+  const direct = a * d - b * c;
+  const closer = over?.determinant;
+  const determinant = closer && !contains(closer, direct) ? middle(closer) : direct;
   const discriminant = (a - d) ** 2 + 4 * b * c;
   const near = (value: number, scale: number, share: number) => Math.abs(value) <= share * scale;
   const triangular = b === 0 || c === 0;
@@ -70,10 +81,9 @@ function linearPart(j: Matrix, over: IntervalMatrix | null): Linear {
       nearBorder
     };
   }
-  const [ia, ib, ic, id] = over;
+  const [ia, ib, ic, id] = over.entries;
   const gap = subtract(ia, id);
   const coupling = multiply(ib, ic);
-  const iDeterminant = subtract(multiply(ia, id), coupling);
   const iDiscriminant = add(multiply(gap, gap), multiply(interval(4, 4), coupling));
   const isZero = (value: Interval) => contains(value, 0);
   const discriminantIsZero = isZero(iDiscriminant) || (isZero(gap) && isZero(coupling));
@@ -82,7 +92,7 @@ function linearPart(j: Matrix, over: IntervalMatrix | null): Linear {
     determinant,
     discriminant,
     traceIsZero: isZero(add(ia, id)),
-    determinantIsZero: isZero(iDeterminant),
+    determinantIsZero: isZero(over.determinant ?? subtract(multiply(ia, id), coupling)),
     discriminantIsZero,
     isScalar: discriminantIsZero && isZero(gap) && isZero(ib) && isZero(ic),
     nearBorder
@@ -213,8 +223,7 @@ function atZeroEigenvalue(spec: ModelSpec, x: number, y: number, j: Matrix, trac
  * @param spec a sound model
  * @param x, y the equilibrium
  * @param j row-major Jacobian there, 1/time
- * @param over enclosures of the entries of `j` over a box that holds the equilibrium, or null: then entries are taken to be
- *   good to 1e-13
+ * @param over what is certain of `j` (see jacobianOver), or null: then entries are taken to be good to 1e-13
  * @returns class, stability, which argument decided, and times. Never throws.
  * @source strogatz2015 §5.2, guckenheimer1983 §3.2, §3.4
  */
@@ -223,13 +232,13 @@ export function classify(
   x: number,
   y: number,
   j: Matrix,
-  over: IntervalMatrix | null
+  over: LinearEnclosure | null
 ): Classification {
   const part = linearPart(j, over);
   const eigenvalues = eigenvaluesOf(part);
   const hyperbolic = !part.determinantIsZero && !(part.traceIsZero && part.determinant > 0);
   // What is zero within rounding is zero from here on: noise must not choose the null vectors.
-  const clean = j.map((entry, i) => (over && distanceToZero(over[i]!) === 0 ? 0 : entry)) as unknown as Matrix;
+  const clean = j.map((entry, i) => (over && distanceToZero(over.entries[i]!) === 0 ? 0 : entry)) as unknown as Matrix;
   let verdict: Verdict;
   if (hyperbolic) {
     const kind = hyperbolicClass(part);

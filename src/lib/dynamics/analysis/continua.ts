@@ -5,59 +5,147 @@ import type { FoundCurve, Search } from './rootSearch';
 type Point = { x: number; y: number };
 
 const POINTS = 65;
+/** Along a stretch the sign of the attraction is read at this many places, evenly in the exponent on both sides. */
+const DECADES = 16;
+const PER_DECADE = 4;
+/** Below this share of its own scale an eigenvalue counts as zero. */
+const FLAT = 1e-12;
 
-function stabilityAlong(system: System, points: Point[]): Pick<Continuum, 'stability' | 'remark'> {
+/** Part of a curve between two places where it may start, end or leave the quadrant. */
+interface Stretch {
+  curve: FoundCurve;
+  from: number;
+  to: number;
+  /** A length along the curve on which things happen. */
+  reach: number;
+}
+
+function pointAt(curve: FoundCurve, t: number, u: number): Point {
+  return curve.along === 'first' ? { x: t, y: u } : { x: u, y: t };
+}
+
+/** Sign of the eigenvalue across the curve, 0 where it is nothing; one eigenvalue along a curve is 0, so the trace is it. */
+function pull(system: System, { curve, reach }: Stretch, t: number): number {
+  const { x, y } = pointAt(curve, t, Math.max(0, curve.at(t)));
   const j = new Float64Array(4);
-  let attracting = 0;
-  let repelling = 0;
-  let flat = 0;
-  for (const { x, y } of points.slice(1, -1)) {
-    system.jacobian(x, y, j);
-    const scale = Math.abs(j[0]!) + Math.abs(j[3]!) + Math.sqrt(Math.abs(j[1]! * j[2]!));
-    // One eigenvalue along a curve of equilibria is 0, so the trace is the other.
-    const trace = j[0]! + j[3]!;
-    if (Math.abs(trace) <= 1e-12 * scale || scale === 0) flat += 1;
-    else if (trace < 0) attracting += 1;
-    else repelling += 1;
-  }
-  if (flat === 0 && repelling === 0) {
-    return verdict('stable', 'Attracts from both sides; each point on it is stable but pulls nothing along the curve.');
-  }
-  if (flat === 0 && attracting === 0) return verdict('unstable', 'Repels on both sides along its whole length.');
-  if (attracting > 0 && repelling > 0) {
-    return verdict('undetermined', 'Attracts along part of its length and repels along the rest.');
-  }
-  return verdict('undetermined', 'The linearisation decides nothing along it.');
+  system.jacobian(x, y, j);
+  // The terms that make up growth per head, which may cancel: next to an axis where the abundance itself is nothing.
+  const [nearX, nearY] = [Math.max(x, 1e-12 * reach), Math.max(y, 1e-12 * reach)];
+  const terms = new Float64Array(2);
+  system.magnitude(nearX, nearY, terms);
+  const scale = terms[0]! / nearX + terms[1]! / nearY;
+  const trace = j[0]! + j[3]!;
+  if (!Number.isFinite(trace)) return Number.NaN;
+  return Math.abs(trace) <= FLAT * scale ? 0 : Math.sign(trace);
 }
 
-function verdict(stability: Stability, remark: string) {
-  return { stability, remark };
+/** Places along a stretch, close to its ends and, where it has no end, far out. */
+function probes({ from, to, reach }: Stretch): number[] {
+  const length = Number.isFinite(to) ? to - from : reach;
+  const list: number[] = [];
+  for (let i = -DECADES * PER_DECADE; i <= DECADES * PER_DECADE; i++) {
+    const part = 10 ** (i / PER_DECADE);
+    if (!Number.isFinite(to)) list.push(from + length * part);
+    else if (part < 0.5) list.push(from + length * part, to - length * part);
+  }
+  return [...new Set(list)].filter((t) => t > from && t < to).sort((p, q) => p - q);
 }
 
-/** Samples a stretch of the curve; a stretch without end is drawn up to twice `reach` beyond its start. */
-function stretch(curve: FoundCurve, from: number, to: number, reach: number): Point[] {
+/** Where the sign of the pull changes between two places. */
+function change(system: System, stretch: Stretch, low: number, high: number, sign: number): number {
+  let [a, b] = [low, high];
+  for (let i = 0; i < 60; i++) {
+    const middle = a + (b - a) / 2;
+    if (pull(system, stretch, middle) === sign) a = middle;
+    else b = middle;
+  }
+  return b;
+}
+
+interface Judgement {
+  stability: Stability;
+  remark: string;
+  /** Places along the curve where it turns from attracting to repelling or back. */
+  changes: number[];
+}
+
+function judge(system: System, stretch: Stretch): Judgement {
+  const signs = probes(stretch)
+    .map((t) => ({ t, sign: pull(system, stretch, t) }))
+    .filter(({ sign }) => !Number.isNaN(sign));
+  const firm = signs.filter(({ sign }) => sign !== 0);
+  // Next to an end where the pull dies out, and within rounding of a change of sign, it is nothing.
+  if (firm.length < 0.5 * signs.length) {
+    return { stability: 'undetermined', remark: 'The linearisation decides nothing along it.', changes: [] };
+  }
+  const changes: number[] = [];
+  for (let i = 1; i < firm.length; i++) {
+    const [before, after] = [firm[i - 1]!, firm[i]!];
+    if (before.sign !== after.sign) changes.push(change(system, stretch, before.t, after.t, before.sign));
+  }
+  const starts = firm[0]!.sign;
+  if (changes.length === 0) {
+    return starts < 0
+      ? {
+          stability: 'stable',
+          remark: 'Attracts from both sides; each point on it is stable but pulls nothing along the curve.',
+          changes
+        }
+      : { stability: 'unstable', remark: 'Repels on both sides along its whole length.', changes };
+  }
+  if (changes.length > 1) {
+    return {
+      stability: 'undetermined',
+      remark: 'Attracts along parts of its length and repels along others.',
+      changes
+    };
+  }
+  const species = stretch.curve.along === 'first' ? 'first' : 'second';
+  const level = Number(changes[0]!.toPrecision(6));
+  const [below, beyond] = starts < 0 ? ['Attracts', 'repels'] : ['Repels', 'attracts'];
+  return {
+    stability: 'undetermined',
+    remark: `${below} while the ${species} species is below ${level} and ${beyond} above.`,
+    changes
+  };
+}
+
+/** Samples a stretch; one without end is drawn up to twice `reach` beyond its start. */
+function sample({ curve, from, to, reach }: Stretch): Point[] {
   const last = Number.isFinite(to) ? to : from + 2 * reach;
-  return Array.from({ length: POINTS }, (_, i) => {
+  const drawn = Array.from({ length: POINTS }, (_, i) => {
     const t = from + ((last - from) * i) / (POINTS - 1);
-    const u = Math.max(0, curve.at(t));
-    return curve.along === 'first' ? { x: t, y: u } : { x: u, y: t };
-  }).filter((point) => Number.isFinite(point.x) && Number.isFinite(point.y));
+    return pointAt(curve, t, curve.at(t));
+  });
+  const size = Math.max(...drawn.slice(1, -1).map((p) => Math.max(Math.abs(p.x), Math.abs(p.y))));
+  // At an end on an axis rounding may leave a trace of the other sign; at a pole there is no point at all.
+  const settle = (n: number) => (n < 0 && n >= -1e-9 * size ? 0 : n);
+  return drawn
+    .map(({ x, y }) => ({ x: settle(x), y: settle(y) }))
+    .filter(({ x, y }) => x >= 0 && y >= 0 && x <= 1e6 * size && y <= 1e6 * size);
 }
 
-function continuumOf(system: System, curve: FoundCurve, from: number, to: number, reach: number): Continuum | null {
-  const points = stretch(curve, from, to, reach);
-  const start = points[0];
-  const end = points[points.length - 1];
-  if (!start || !end || points.length < 3) return null;
-  const finite = Number.isFinite(to) && Number.isFinite(curve.at(to));
-  return { from: start, to: finite ? end : null, points, ...stabilityAlong(system, points) };
-}
-
-/** Sorts ends as the points they are: from the smaller x. */
+/** Sorts ends as the points they are: an end at infinity last, else from the smaller x. */
 function oriented(continuum: Continuum): Continuum {
   const { from, to, points } = continuum;
   if (to === null || from.x < to.x || (from.x === to.x && from.y <= to.y)) return continuum;
   return { ...continuum, from: to, to: from, points: [...points].reverse() };
+}
+
+function continuumOf(system: System, stretch: Stretch): Continuum | null {
+  const { stability, remark, changes } = judge(system, stretch);
+  const { curve, from, to } = stretch;
+  const reach = Math.max(stretch.reach, ...changes);
+  const points = sample({ ...stretch, reach });
+  const [start, end] = [points[0], points[points.length - 1]];
+  if (!start || !end || points.length < 3) return null;
+  const isPlace = (t: number) => Number.isFinite(t) && curve.at(t) >= 0 && curve.at(t) < Infinity;
+  const ends = (t: number, point: Point) => isPlace(t) || Math.abs(curve.at(t)) < 1e-9 * Math.max(point.x, point.y);
+  const [hasStart, hasEnd] = [ends(from, start), Number.isFinite(to) && ends(to, end)];
+  if (hasStart) return oriented({ from: start, to: hasEnd ? end : null, points, stability, remark });
+  const turned = [...points].reverse();
+  if (hasEnd) return { from: end, to: null, points: turned, stability, remark };
+  return { from: start, to: null, points, stability, remark: `${remark} It has no end on either side.` };
 }
 
 /**
@@ -65,7 +153,8 @@ function oriented(continuum: Continuum): Continuum {
  * @returns one continuum a stretch with its two ends; a far end at infinity is null. Never throws.
  */
 export function continuaOf(system: System, search: Search): Continuum[] {
-  const reach = Math.max(0, ...search.points.map((point) => Math.max(point.x, point.y))) || 1;
+  const sizes = search.points.map((point) => Math.max(point.x, point.y)).filter(Number.isFinite);
+  const reach = Math.max(0, ...sizes, ...search.curves.flatMap(({ cuts }) => cuts)) || 1;
   return search.curves.flatMap((curve) => {
     const marks = [0, ...curve.cuts, Infinity];
     const found: Continuum[] = [];
@@ -74,8 +163,8 @@ export function continuaOf(system: System, search: Search): Continuum[] {
       if (Number.isFinite(to) && to - from <= 1e-12 * to) continue;
       const inside = Number.isFinite(to) ? (from + to) / 2 : from + reach;
       if (!(curve.at(inside) >= 0)) continue;
-      const continuum = continuumOf(system, curve, from, to, reach);
-      if (continuum) found.push(oriented(continuum));
+      const continuum = continuumOf(system, { curve, from, to, reach });
+      if (continuum) found.push(continuum);
     }
     return found;
   });

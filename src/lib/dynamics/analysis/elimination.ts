@@ -86,6 +86,10 @@ function eliminateConsumer<T>(ring: Ring<T>, k: Coefficients<T>): Omit<Eliminati
     ? shift(mul(conversion, bottom), free ? 1 : 0)
     : add(constant(k.s2), shift(mul(conversion, gain), free ? 1 : 0));
   const linear = ring.isZero(k.s2) ? crowd : top;
+  if (plain && ring.isZero(k.q[0])) {
+    // A consumer that neither dies nor grows by itself: what it eats must make up for what is taken, or it never rests.
+    return ring.isZero(k.s2) ? null : { resultant: supply, top, bottom };
+  }
   if (plain) {
     const rest = ring.isZero(k.s2) ? supply : mul(supply, bottom);
     return { resultant: add(mul(q0, linear), rest), top, bottom };
@@ -151,6 +155,25 @@ export function reducedEquations<T>(ring: Ring<T>, k: Coefficients<T>, x: T, y: 
   const gain = carried(mul(k.e, phi));
   const g2 = second ? add(mul(growth, d), gain) : add(mul(add(mul(growth, y), carried(k.s2)), d), mul(gain, y));
   return [g1, g2];
+}
+
+/**
+ * Growth per head of both species without what is added and taken by the unit, in any ring. Slopes of these carry no
+ * rounding of terms that cancel at rest. Needs x away from 0 under leslie growth.
+ */
+export function perHeadRates<T>(ring: Ring<T>, k: Coefficients<T>, x: T, y: T): [T, T] {
+  const { add, sub, mul } = ring;
+  const own = (c: readonly [T, T, T], n: T) => add(c[0], mul(add(c[1], mul(c[2], n)), n));
+  const p = own(k.p, x);
+  const q = own(k.q, y);
+  if (k.interaction === 'competition') return [sub(p, mul(k.c12, y)), sub(q, mul(k.c21, x))];
+  const psi = k.power === 2 ? mul(k.a, x) : k.a;
+  const phi = mul(psi, x);
+  const plain = ring.isZero(k.h) && ring.isZero(k.w);
+  const d = add(add(ring.one, mul(k.h, phi)), mul(k.w, y));
+  const perD = (value: T) => (plain ? value : ring.div(value, d));
+  const grown = ring.isZero(k.leslie) ? q : sub(q, ring.div(mul(k.leslie, y), x));
+  return [sub(p, perD(mul(psi, y))), add(grown, mul(k.e, perD(phi)))];
 }
 
 /** dx/dt and dy/dt in any ring: the source of slopes of every order. At x = 0 leslie growth has no value. */

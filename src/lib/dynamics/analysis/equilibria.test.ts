@@ -67,6 +67,28 @@ describe('merging equilibria', () => {
   });
 });
 
+describe('signs below the rounding of the rates', () => {
+  it('damps swings whose damping is a trillionth of a trillionth of their speed', () => {
+    // Trace = -r x/K exactly, next to a determinant of 1e-12.
+    const report = findEquilibria({
+      interaction: 'consumer-resource',
+      first: logistic(1, 1e12),
+      second: { mortality: 1e-12 },
+      feeding: { response: 'holling-2', a: 1e-12, h: 1e-6, e: 1e12 }
+    });
+    expect(report.equilibria[1]).toMatchObject({ class: 'stable spiral', decidedBy: 'linearisation' });
+    expect(report.equilibria[1]!.trace / -1e-24).toBeCloseTo(1, 5);
+  });
+
+  it('tells a point apart from the axis it has just left, and both apart from a merger', () => {
+    const report = findEquilibria(competing(0.5, 1 - 1e-15));
+    expect(report.equilibria.slice(2)).toEqual([
+      expect.objectContaining({ y: 0, class: 'saddle' }),
+      expect.objectContaining({ class: 'stable node', multiplicity: 1 })
+    ]);
+  });
+});
+
 describe('beyond the linearisation', () => {
   it('knows the conserved quantity of the classical case, under effort too', () => {
     const report = findEquilibria({

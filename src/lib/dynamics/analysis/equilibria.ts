@@ -1,7 +1,7 @@
 import { compile } from '../model/compile';
 import { coefficientsOf } from '../model/coefficients';
 import type { ModelSpec, System } from '../model/spec';
-import { INTERVAL, ZERO } from '../numeric/interval';
+import { contains, INTERVAL, middle, ZERO } from '../numeric/interval';
 import { ENGINE_VERSION } from '../version';
 import { absorbingStates } from './absorbing';
 import { jacobianOver, lift, type Lifted } from './certify';
@@ -22,9 +22,13 @@ function describe(system: System, lifted: Lifted, found: FoundPoint): Equilibriu
   const { x, y, box, multiplicity } = found;
   const j = new Float64Array(4);
   system.jacobian(x, y, j);
-  const entries = [j[0]!, j[1]!, j[2]!, j[3]!] as const;
   const over = box ? jacobianOver(lifted, x === 0 ? ZERO : box.x, y === 0 ? ZERO : box.y) : null;
-  const usable = over?.every((entry) => Number.isFinite(entry.lo) && Number.isFinite(entry.hi)) ? over : null;
+  const usable = over?.entries.every((entry) => Number.isFinite(entry.lo) && Number.isFinite(entry.hi)) ? over : null;
+  // An entry that rounding has carried out of its enclosure is taken back to the middle of it.
+  const entries = Array.from(j, (entry, i) => {
+    const within = usable?.entries[i];
+    return within && !contains(within, entry) ? middle(within) : entry;
+  }) as [number, number, number, number];
   return { x, y, feasible: x >= 0 && y >= 0, multiplicity, ...classify(system.spec, x, y, entries, usable) };
 }
 

@@ -228,6 +228,12 @@ class Collector implements Search {
   private uncoupled(first: Polynomial<Interval>, second: Polynomial<Interval>): void {
     const xs = rootsOf(first, this.includeInfeasible);
     const ys = rootsOf(second, this.includeInfeasible);
+    if (xs.vanishes && ys.vanishes) {
+      this.curves = [];
+      this.points = [];
+      this.doubts.push('nothing changes at any state, so that every one of them is at rest and no list can hold them');
+      return;
+    }
     if (xs.vanishes || ys.vanishes) {
       // One species rests anywhere: a line for each state of the other.
       if (xs.vanishes)
@@ -251,6 +257,8 @@ class Collector implements Search {
   private eliminated({ elimination, roots }: Solved): void {
     const { along, top, bottom } = elimination;
     if (roots.vanishes) {
+      // The rival's absence all along is its axis, which is on the list where nothing is added to it or taken.
+      if (top.length === 0 && this.curves.some((curve) => curve.along === along)) return;
       const cuts = [...rootsOf(top, false).places, ...rootsOf(bottom, false).places].map((place) => place.value);
       this.curves.push({ along, at: (t) => real(top, t) / real(bottom, t), cuts: cuts.sort((p, q) => p - q) });
       return;
