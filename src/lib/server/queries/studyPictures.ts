@@ -1,5 +1,5 @@
 import type { StudySketch } from '$lib/contracts/views';
-import { simulate } from '$lib/dynamics';
+import { simulate, type TrajectoryResult } from '$lib/dynamics';
 import { assemble } from '$lib/study';
 import type { Context } from '../context';
 import { deadline } from '../numerics/deadline';
@@ -9,8 +9,10 @@ import { ResultCache } from '../studies/cache';
 /** The stamps beside the lines of the overview; null where there is nothing to draw yet. */
 export interface StudyPictures {
   sketch: StudySketch | null;
-  /** The path from today's counts. */
-  series: { t: number[]; first: number[]; second: number[] } | null;
+  /** The path from today's counts, and what happens on it. */
+  series:
+    | ({ t: number[]; first: number[]; second: number[] } & Pick<TrajectoryResult, 'events' | 'outcome' | 'remark'>)
+    | null;
   /** How wide each rate is, as a share of its value. */
   spreads: { path: string; cv: number | null }[];
 }
@@ -34,10 +36,13 @@ export async function studyPictures(context: Context, studyId: string): Promise<
               start: { x: today.x, y: today.y },
               span: [0, content.run.span],
               samples: POINTS,
-              rtol: 1e-5,
+              // As fine as the run itself, so that the overview and Trajectories name the same day.
+              rtol: content.run.rtol,
+              thresholds: content.run.thresholds,
               shouldStop: deadline(200)
             });
-            return { t: path.t, first: path.x, second: path.y };
+            const { t, x, y, events, outcome, remark } = path;
+            return { t, first: x, second: y, events, outcome, remark };
           })
         : null,
     spreads: Object.values(resolved).map(({ path, cv }) => ({ path, cv }))

@@ -17,4 +17,8 @@ const hues = ['holds', 'depends', 'lost', 'cycles'] as const;
 
 /** The pictogram of a verdict; kinds without one get the empty plane. */
 export const verdictKindOf = (kind: string): VerdictKind => drawn.find((k) => k === kind) ?? 'none';
-export const hueOf = (consequence: string): VerdictHue => hues.find((h) => h === consequence) ?? 'unknown';
+
+/** The hue says what a verdict means for what is to be kept; where nothing is, a cycle still has a hue of its own. */
+export function hueOf({ kind, consequence }: { kind: string; consequence: string }): VerdictHue {
+  return hues.find((hue) => hue === consequence) ?? (kind === 'cycles' ? 'cycles' : 'unknown');
+}

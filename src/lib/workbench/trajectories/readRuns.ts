@@ -3,10 +3,10 @@ import type { StudyQuestion } from '$lib/contracts/study';
 import type { TrajectoryResult } from '$lib/dynamics';
 import { formatDuration, formatNumber, displayUnit, sentenceCase } from '$lib/study';
 
-export interface Run {
-  start: Start;
-  result: TrajectoryResult;
-  crossCheck: { largestRelativeDifference: number | null; reason: string | null };
+/** What a sentence about a run is made from. */
+export interface RunReading {
+  start: Pick<Start, 'label'>;
+  result: Pick<TrajectoryResult, 'x' | 'y' | 'events' | 'outcome' | 'remark'>;
 }
 
 /** Piece of a sentence: plain words, words that carry it, or a species. */
@@ -18,7 +18,7 @@ const last = (values: readonly number[]) => values.at(-1) ?? 0;
  * What the first run says, in one sentence: who falls below a limit and when, who runs out, or where both stand at the end.
  * Only what was computed is said; a run that stopped early says so.
  */
-export function readRuns(runs: readonly Run[], question: StudyQuestion, run: RunSettings): Piece[] {
+export function readRuns(runs: readonly RunReading[], question: StudyQuestion, run: RunSettings): Piece[] {
   const first = runs[0];
   if (!first) return [{ text: 'No start is given yet, so there is no path to follow.' }];
   const from = first.start.label.toLowerCase().startsWith('from') ? first.start.label : `From ${first.start.label}`;
