@@ -16,6 +16,16 @@ export { classify, type Classification } from './analysis/classify';
 export { invasion, type Invasion } from './analysis/invasion';
 export * from './analysis/sensitivity';
 export * from './analysis/isoclines';
+export {
+  leverForLevel,
+  thresholds,
+  type EquilibriumBranch,
+  type LeverValue,
+  type ParameterThreshold,
+  type ThresholdKind,
+  type ThresholdReport
+} from './analysis/thresholds';
+export type { BranchOptions } from './analysis/branches';
 export * from './analysis/vectorField';
 export { parametersOf, symbolOf, withParameter, type ModelParameter } from './model/parameters';
 export * from './model/equations';

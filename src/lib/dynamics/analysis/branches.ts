@@ -1,0 +1,321 @@
+/**
+ * Every branch of equilibria of a model over a range of one parameter: complete lists of equilibria at several values are
+ * joined by continuation, and what begins where another branch loses or gains a species is followed too.
+ */
+import type { ModelSpec } from '../model/spec';
+import { locate, tangentAt, walk, type CurvePoint } from './continuation';
+import { findEquilibria } from './equilibria';
+import { faceKeyOf, faceOf, familyOf, type Face, type FaceKey, type Family } from './faces';
+import type { Equilibrium } from './results';
+
+export interface BranchOptions {
+  /** Number of equal parts of the range at whose ends all equilibria are found and proven; default 12. */
+  parts?: number;
+  /** Longest step along a branch, as a share of the range; default 1/80. */
+  longest?: number;
+  /** Asked now and then; true stops the search. */
+  shouldStop?: () => boolean;
+}
+
+/** One branch inside the closed quadrant and the range, its points in order. */
+export interface Branch {
+  face: Face;
+  points: CurvePoint[];
+  /** What each end is: the end of the range, an abundance of 0, the other end, an abundance without bound, or lost. */
+  ends: [BranchEnd, BranchEnd];
+}
+export type BranchEnd = 'range' | 'x = 0' | 'y = 0' | 'closed' | 'unbounded' | 'lost';
+
+export interface Branches {
+  family: Family;
+  faces: Record<FaceKey, Face>;
+  branches: Branch[];
+  /** Why something may be missing, each a clause; empty when every equilibrium at every seeded value lies on a branch. */
+  doubts: string[];
+  /** Number of values at which all equilibria were found. */
+  seeded: number;
+  stopped: boolean;
+}
+
+/** An equilibrium found at one value of the parameter. */
+interface Seed {
+  face: FaceKey;
+  q: number;
+  x: number;
+  y: number;
+  /** Index of the branch it lies on, or null. */
+  branch: number | null;
+}
+
+/** Abundances this many times the largest in sight are without bound. */
+const BEYOND = 1e7;
+/** Two points nearer than this, in units of the scale, are one. */
+const SAME = 1e-7;
+
+/** Distance of two points in units of the scale, by state alone. */
+function apart(face: Face, a: Float64Array, b: Float64Array): number {
+  const scale = new Float64Array(a.length);
+  face.curve.scale(a, scale);
+  let largest = 0;
+  for (let i = 0; i + 1 < a.length; i++) largest = Math.max(largest, Math.abs(a[i]! - b[i]!) / scale[i]!);
+  return largest;
+}
+
+function seedsOf(
+  family: Family,
+  parts: number,
+  stop: () => boolean
+): { seeds: Seed[]; doubts: string[]; sizes: [number, number]; seeded: number } {
+  const seeds: Seed[] = [];
+  const doubts: string[] = [];
+  let sizeX = 0;
+  let sizeY = 0;
+  let seeded = 0;
+  for (let i = 0; i <= parts && !stop(); i++) {
+    const q = i === parts ? family.q1 : family.q0 + ((family.q1 - family.q0) * i) / parts;
+    const { spec, p } = family.at(q);
+    const report = findEquilibria(spec);
+    seeded += 1;
+    if (!report.complete) doubts.push(`the equilibria at ${Number(p.toPrecision(6))} are not proven to be all`);
+    if (report.continua.length > 0) doubts.push(`at ${Number(p.toPrecision(6))} a whole curve of states is at rest`);
+    for (const { x, y } of report.equilibria as Equilibrium[]) {
+      seeds.push({ face: faceKeyOf(family, x, y), q, x, y, branch: null });
+      sizeX = Math.max(sizeX, x);
+      sizeY = Math.max(sizeY, y);
+    }
+  }
+  return { seeds, doubts, sizes: [sizeX || 1, sizeY || 1], seeded };
+}
+
+/** What a branch must not pass: the ends of the range and the axes. */
+interface Limit {
+  end: BranchEnd;
+  /** Positive inside. */
+  test: (z: Float64Array) => number;
+}
+
+function limitsOf(family: Family, face: Face): Limit[] {
+  const limits: Limit[] = [
+    { end: 'range', test: (z) => face.q(z) - family.q0 },
+    { end: 'range', test: (z) => family.q1 - face.q(z) }
+  ];
+  if (face.key === 'both' || face.key === 'first') limits.push({ end: 'x = 0', test: (z) => face.plane(z).x });
+  if (face.key === 'both' || face.key === 'second') limits.push({ end: 'y = 0', test: (z) => face.plane(z).y });
+  return limits;
+}
+
+/** Walks one way until a limit, the start again, or nowhere. */
+function oneWay(
+  family: Family,
+  face: Face,
+  start: CurvePoint,
+  sizes: readonly [number, number],
+  longest: number,
+  stop: () => boolean
+): { points: CurvePoint[]; end: BranchEnd } {
+  const limits = limitsOf(family, face);
+  const points: CurvePoint[] = [];
+  let here = start;
+  for (const next of walk(face.curve, start.z, start.tangent, { longest })) {
+    if (stop()) return { points, end: 'lost' };
+    let cut: { share: number; z: Float64Array; end: BranchEnd } | null = null;
+    for (const { end, test } of limits) {
+      if (test(next.z) >= 0) continue;
+      // The start may lie on the limit itself: then the walk leads out at once.
+      if (!(test(here.z) > 0)) return { points, end };
+      const found = locate(face.curve, here, next, test);
+      if (found && (cut === null || found.share < cut.share)) cut = { ...found, end };
+    }
+    if (cut) {
+      snap(family, face, cut.z, cut.end);
+      points.push({ z: cut.z, tangent: next.tangent });
+      return { points, end: cut.end };
+    }
+    points.push(next);
+    const { x, y } = face.plane(next.z);
+    if (x > BEYOND * sizes[0] || y > BEYOND * sizes[1]) return { points, end: 'unbounded' };
+    if (points.length > 4 && passes(face, here, next, start.z)) return { points, end: 'closed' };
+    here = next;
+  }
+  return { points, end: 'lost' };
+}
+
+/** Puts a point located on a limit exactly there. */
+function snap(family: Family, face: Face, z: Float64Array, end: BranchEnd): void {
+  const last = z.length - 1;
+  if (end === 'range')
+    z[last] = Math.abs(z[last]! - family.q0) < Math.abs(z[last]! - family.q1) ? family.q0 : family.q1;
+  else if (end === 'x = 0') z[0] = 0;
+  else if (end === 'y = 0') z[face.key === 'both' ? 1 : 0] = 0;
+  // An axis that is met at the very end of the range is met exactly there.
+  for (const q of [family.q0, family.q1]) if (Math.abs(z[last]! - q) < 1e-12 * (family.q1 - family.q0)) z[last] = q;
+}
+
+/** Whether the stretch between two points of a walk passes through a given point of the curve. */
+function passes(face: Face, a: CurvePoint, b: CurvePoint, z: Float64Array): boolean {
+  const scale = new Float64Array(z.length);
+  face.curve.scale(z, scale);
+  let along = 0;
+  let chord = 0;
+  for (let i = 0; i < z.length; i++) {
+    const step = (b.z[i]! - a.z[i]!) / scale[i]!;
+    along += (step * (z[i]! - a.z[i]!)) / scale[i]!;
+    chord += step * step;
+  }
+  const share = along / chord;
+  if (!(share >= -1e-9 && share <= 1 + 1e-9)) return false;
+  let off = 0;
+  for (let i = 0; i < z.length; i++) {
+    off = Math.max(off, Math.abs(a.z[i]! + share * (b.z[i]! - a.z[i]!) - z[i]!) / scale[i]!);
+  }
+  return off <= 0.25 * Math.sqrt(chord);
+}
+
+/** Marks the seeds that a stretch of a branch passes exactly. */
+function claim(face: Face, a: CurvePoint, b: CurvePoint, seeds: readonly Seed[], branch: number): void {
+  const [qa, qb] = [face.q(a.z), face.q(b.z)];
+  const [low, high] = [Math.min(qa, qb), Math.max(qa, qb)];
+  for (const seed of seeds) {
+    if (seed.face !== face.key || seed.branch !== null) continue;
+    const wanted = face.unknowns(seed.x, seed.y, seed.q);
+    // Near a fold both halves lie close by: only the curve itself, solved at this very value, tells which one is meant.
+    for (const end of [a, b]) if (face.q(end.z) === seed.q && apart(face, end.z, wanted) < SAME) seed.branch = branch;
+    if (seed.branch !== null || seed.q < low || seed.q > high) continue;
+    if (qa === qb) continue;
+    const found = locate(face.curve, a, b, (z) => face.q(z) - seed.q);
+    if (found && apart(face, found.z, wanted) < SAME) seed.branch = branch;
+  }
+}
+
+/**
+ * @param spec a model without issues. @param path a parameter of it. @param range its first and last value, sound at both.
+ * @returns branches clipped to the quadrant and the range, and what could not be settled. Never throws on valid input.
+ * @source kuznetsov2004 §10.2
+ */
+export function branchesOf(
+  spec: ModelSpec,
+  path: string,
+  range: readonly [number, number],
+  options: BranchOptions = {}
+): Branches {
+  const { parts = 12, longest = 1 / 80, shouldStop = () => false } = options;
+  const family = familyOf(spec, path, range);
+  let stopped = false;
+  let asked = 0;
+  const stop = (): boolean => {
+    if (!stopped && asked++ % 16 === 0) stopped = shouldStop();
+    return stopped;
+  };
+  const { seeds, doubts, sizes, seeded } = seedsOf(family, parts, stop);
+  const sizeOn = (key: FaceKey, which: 'x' | 'y'): number =>
+    Math.max(0, ...seeds.filter((seed) => seed.face === key).map((seed) => seed[which])) ||
+    sizes[which === 'x' ? 0 : 1];
+  const make = (key: FaceKey): Face => faceOf(family, key, sizeOn(key, 'x'), sizeOn(key, 'y'));
+  const faces = { both: make('both'), first: make('first'), second: make('second'), neither: make('neither') };
+  const branches: Branch[] = [];
+
+  const trace = (face: Face, z: Float64Array): void => {
+    const tangent = tangentAt(face.curve, z);
+    const p = Number(family.value(face.q(z)).toPrecision(6));
+    if (tangent === null) {
+      doubts.push(`a state at ${p} could not be followed`);
+      return;
+    }
+    const start: CurvePoint = { z, tangent };
+    const ahead = oneWay(family, face, start, sizes, longest, stop);
+    const turned: CurvePoint = { z, tangent: tangent.map((entry) => -entry) };
+    const behind =
+      ahead.end === 'closed'
+        ? { points: [], end: 'closed' as const }
+        : oneWay(family, face, turned, sizes, longest, stop);
+    const back = behind.points
+      .reverse()
+      .map((point) => ({ z: point.z, tangent: point.tangent.map((entry) => -entry) }));
+    const points = [...back, start, ...ahead.points];
+    if ((ahead.end === 'lost' || behind.end === 'lost') && !stopped) {
+      doubts.push(`the branch through ${p} could not be followed to its end`);
+    }
+    if (points.length < 2) return;
+    const index = branches.push({ face, points, ends: [behind.end, ahead.end] }) - 1;
+    for (let i = 1; i < points.length; i++) claim(face, points[i - 1]!, points[i]!, seeds, index);
+  };
+
+  for (const seed of seeds) {
+    if (stop()) break;
+    if (seed.branch !== null) continue;
+    const before = branches.length;
+    trace(faces[seed.face], faces[seed.face].unknowns(seed.x, seed.y, seed.q));
+    if (branches.length > before) seed.branch = before;
+  }
+  // What meets an axis goes on, or begins, on another face: at every such place each face has to have its branch.
+  for (let i = 0; i < branches.length && !stop(); i++) {
+    for (const place of meetings(family, branches[i]!)) {
+      const face = faces[place.face];
+      const z = face.unknowns(place.x, place.y, place.q);
+      const known = branches.some(
+        (branch) => branch.face === face && branch.points.some((b, k) => touches(face, branch.points[k - 1], b, z))
+      );
+      if (!known) trace(face, z);
+    }
+  }
+  return { family, faces, branches, doubts, seeded, stopped };
+}
+
+/** Whether a stretch of a branch passes through a place, or ends there. */
+function touches(face: Face, a: CurvePoint | undefined, b: CurvePoint, z: Float64Array): boolean {
+  const scale = new Float64Array(z.length);
+  face.curve.scale(z, scale);
+  if (z.every((value, i) => Math.abs(value - b.z[i]!) < 1e-6 * scale[i]!)) return true;
+  return a !== undefined && passes(face, a, b, z);
+}
+
+interface Meeting {
+  face: FaceKey;
+  x: number;
+  y: number;
+  q: number;
+}
+
+/** Growth per head of the absent species along a branch on an axis: zero where the branch of the inside meets it. */
+export function invasionRates(family: Family, face: Face): { into: FaceKey; rate: (z: Float64Array) => number }[] {
+  const j = new Float64Array(4);
+  const own = (z: Float64Array, entry: 0 | 3): number => {
+    const { x, y } = face.plane(z);
+    family.at(face.q(z)).system.jacobian(x, y, j);
+    return j[entry]!;
+  };
+  switch (face.key) {
+    case 'both':
+      return [];
+    case 'first':
+      return [{ into: 'both', rate: (z) => own(z, 3) }];
+    case 'second':
+      return [{ into: 'both', rate: (z) => own(z, 0) }];
+    case 'neither':
+      return [
+        { into: 'first', rate: (z) => own(z, 0) },
+        { into: 'second', rate: (z) => own(z, 3) }
+      ];
+  }
+}
+
+/** Places where a branch meets another face: its own ends on an axis, and changes of sign of an invader's growth. */
+function meetings(family: Family, { face, points, ends }: Branch): Meeting[] {
+  const found: Meeting[] = [];
+  ends.forEach((end, i) => {
+    if (end !== 'x = 0' && end !== 'y = 0') return;
+    const point = points[i === 0 ? 0 : points.length - 1]!;
+    const { x, y } = face.plane(point.z);
+    const key = faceKeyOf(family, x, y);
+    if (key !== face.key) found.push({ face: key, x, y, q: face.q(point.z) });
+  });
+  for (const { into, rate } of invasionRates(family, face)) {
+    for (let i = 1; i < points.length; i++) {
+      const [a, b] = [points[i - 1]!, points[i]!];
+      if (!(rate(a.z) * rate(b.z) < 0)) continue;
+      const place = locate(face.curve, a, b, rate);
+      if (place) found.push({ face: into, ...face.plane(place.z), q: face.q(place.z) });
+    }
+  }
+  return found;
+}
