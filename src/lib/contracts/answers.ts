@@ -41,6 +41,9 @@ export const EquilibriumAnswer = z.object({
     'conserved quantity',
     'first Lyapunov coefficient',
     'centre manifold',
+    'trapping argument',
+    'motion along an axis',
+    'normal form',
     'continuum',
     'undecided'
   ]),

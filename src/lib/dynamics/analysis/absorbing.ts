@@ -1,60 +1,71 @@
 import type { System } from '../model/spec';
-import { INTERVAL, interval } from '../numeric/interval';
-import { positiveRoots } from '../numeric/realRoots';
+import { INTERVAL, interval, signOf, type Interval } from '../numeric/interval';
+import { rangeOf } from '../numeric/realRoots';
 import { tidy, type Lifted } from './certify';
 import { firstAlone, secondAlone } from './elimination';
 import type { AbsorbingState, Stability } from './results';
+import { rootsOf, type PinnedPlace as RootPlace } from './rootPlaces';
 
 type Key = 'first' | 'second';
 
 const NAMES: Record<Key, string> = { first: 'the first species', second: 'the second species' };
 
-/** A species under a quota that is never stocked stays at 0 once it has run out. */
+/** A species from which a quota takes more than is added stays at 0 once it has run out: what is stocked is taken at once. */
 function isHeld(system: System, key: Key): boolean {
   const species = system.spec[key];
-  return (species.removal?.quota ?? 0) > 0 && (species.stocking ?? 0) === 0;
+  return (species.removal?.quota ?? 0) > (species.stocking ?? 0);
 }
 
-/** Stability of what remains, on its own axis: the sign of its slope, then of its curvature as seen from inside. */
-function stabilityAlone(system: System, free: Key, n: number): Stability {
-  const rate = (value: number) => {
-    const out = new Float64Array(2);
-    system.rhs(free === 'first' ? value : 0, free === 'first' ? 0 : value, out);
-    return free === 'first' ? out[0]! : out[1]!;
-  };
-  const j = new Float64Array(4);
-  system.jacobian(free === 'first' ? n : 0, free === 'first' ? 0 : n, j);
-  const slope = free === 'first' ? j[0]! : j[3]!;
-  const magnitude = new Float64Array(2);
-  system.magnitude(free === 'first' ? n : 0, free === 'first' ? 0 : n, magnitude);
-  const scale = n > 0 ? (free === 'first' ? magnitude[0]! : magnitude[1]!) / n : 0;
-  if (Math.abs(slope) > 1e-12 * scale && slope !== 0) return slope < 0 ? 'stable' : 'unstable';
-  const step = n > 0 ? 1e-3 * n : 1e-6;
-  if (n === 0) {
-    const ahead = rate(step);
-    if (ahead === 0) return 'neutral';
-    return ahead < 0 ? 'stable' : 'unstable';
+/** Stability of the loss of both, one held: the other leaves 0 if it grows from a few. */
+function stabilityAtZero(polynomial: readonly Interval[]): Stability {
+  for (const coefficient of polynomial) {
+    const sign = signOf(coefficient);
+    if (sign === null) return 'undetermined';
+    if (sign !== 0) return sign > 0 ? 'unstable' : 'stable';
   }
-  const [below, above] = [rate(n - step), rate(n + step)];
+  return 'neutral';
+}
+
+/** Sign of a polynomial just beside a root, from where rounding lets it be told. */
+function signBeside(polynomial: readonly Interval[], root: RootPlace, side: -1 | 1): number {
+  const edge = side < 0 ? Math.min(root.lo, root.from) : Math.max(root.hi, root.to);
+  for (let air = 2 ** -50; air < 0.1; air *= 2) {
+    const sign = signOf(rangeOf(polynomial, edge * (1 + side * air), edge * (1 + side * air)));
+    if (sign !== null && sign !== 0) return sign;
+  }
+  return 0;
+}
+
+/** Stability of a level above 0 of what remains: growth below it and decline above. */
+function stabilityAlone(polynomial: readonly Interval[], root: RootPlace): Stability {
+  const [below, above] = [signBeside(polynomial, root, -1), signBeside(polynomial, root, 1)];
+  if (below === 0 || above === 0) return 'undetermined';
   return below > 0 && above < 0 ? 'stable' : 'unstable';
 }
 
-function oneHeld(system: System, lifted: Lifted, held: Key): AbsorbingState[] {
+function oneHeld(lifted: Lifted, held: Key): AbsorbingState[] {
   const free: Key = held === 'first' ? 'second' : 'first';
   const own = held === 'first' ? secondAlone(INTERVAL, lifted.interval) : firstAlone(INTERVAL, lifted.interval);
   const untouched = INTERVAL.isZero(held === 'first' ? lifted.interval.s2 : lifted.interval.s1);
-  const roots = positiveRoots(own).places.map((place) => tidy(place.value, interval(place.lo, place.hi)));
-  const values = untouched ? [0, ...roots] : roots;
-  return values.map((n) => ({
-    x: held === 'first' ? 0 : n,
-    y: held === 'first' ? n : 0,
+  const at = (n: number) => (held === 'first' ? { x: 0, y: n } : { x: n, y: 0 });
+  const states: AbsorbingState[] = rootsOf(own, false).places.map((root) => ({
+    ...at(tidy(root.value, interval(root.lo, root.hi))),
     held: [held],
-    stability: stabilityAlone(system, free, n),
-    remark:
-      n === 0
-        ? `Both are gone: ${NAMES[held]} ran out under its quota.`
-        : `Holds only because ${NAMES[held]} ran out under its quota; ${NAMES[free]} rests on its own.`
+    stability: stabilityAlone(own, root),
+    remark: `Holds only because ${NAMES[held]} ran out under its quota; ${NAMES[free]} rests on its own.`
   }));
+  if (untouched) {
+    states.push({
+      ...at(0),
+      held: [held],
+      stability: stabilityAtZero(own),
+      remark:
+        own.length === 0
+          ? `${NAMES[held].replace('the', 'The')} ran out under its quota; ${NAMES[free]} then stays at whatever level it has.`
+          : `Both are gone: ${NAMES[held]} ran out under its quota.`
+    });
+  }
+  return states;
 }
 
 function bothGone(held: Key[], remark: string): AbsorbingState {
@@ -71,11 +82,11 @@ export function absorbingStates(system: System, lifted: Lifted): AbsorbingState[
   const second = isHeld(system, 'second');
   const states: AbsorbingState[] = [];
   const withoutCeiling = !INTERVAL.isZero(lifted.interval.leslie);
-  if (first && !withoutCeiling) states.push(...oneHeld(system, lifted, 'first'));
-  if (second) states.push(...oneHeld(system, lifted, 'second'));
+  if (first && !withoutCeiling) states.push(...oneHeld(lifted, 'first'));
+  if (second) states.push(...oneHeld(lifted, 'second'));
   if (first && second) {
     states.push(bothGone(['first', 'second'], 'Both species ran out under their quotas.'));
-  } else if (first && withoutCeiling && (system.spec.second.stocking ?? 0) === 0) {
+  } else if (first && withoutCeiling) {
     states.push(
       bothGone(['first'], 'The first species ran out under its quota, and without it the consumer is gone too.')
     );

@@ -11,9 +11,10 @@ import {
 import { coefficientsOf } from '../model/coefficients';
 import type { ModelSpec } from '../model/spec';
 import { REAL } from '../numeric/ring';
+import { atDoubleZero, UNDECIDED, type Verdict } from './atDoubleZero';
 import type { LinearEnclosure } from './certify';
 import { centreManifold, firstLyapunov, higherTerms, signOfWeighed, type CentreManifold } from './normalForm';
-import type { Complex, DecidedBy, Equilibrium, EquilibriumClass, Stability } from './results';
+import type { Complex, Equilibrium, EquilibriumClass, Stability } from './results';
 
 type Matrix = readonly [number, number, number, number];
 
@@ -138,27 +139,19 @@ function hyperbolicClass(part: Linear): EquilibriumClass {
   return part.discriminant < 0 ? `${side} spiral` : `${side} node`;
 }
 
-/** Exponential resource, proportional response, plain mortality: e a x - m ln x + a y - r ln y never changes. */
+/**
+ * Models in which swings around an equilibrium with trace 0 never change in size. Exponential resource and plain mortality,
+ * nothing added or taken by the unit, with one of
+ * - a proportional response: e a x - m ln x + a y - r ln y is kept;
+ * - holling-3, where trace 0 means e = 2 m h: with psi = 1/(a x) + h x the paths obey psi' = psi_x (r psi - y) and
+ *   (ln y)' = m psi_x, so that d psi/d ln y = (r psi - y)/m, a linear equation with an integral.
+ */
 function hasConservedQuantity(spec: ModelSpec): boolean {
   if (spec.interaction !== 'consumer-resource') return false;
   const k = coefficientsOf(REAL, spec);
-  const absent = [k.p[1], k.p[2], k.q[1], k.leslie, k.h, k.w, k.s1, k.s2];
-  return absent.every((value) => value === 0) && k.power === 1 && k.p[0] > 0 && k.q[0] < 0;
+  const absent = [k.p[1], k.p[2], k.q[1], k.leslie, k.w, k.s1, k.s2];
+  return absent.every((value) => value === 0) && (k.h === 0 || k.power === 2) && k.p[0] > 0 && k.q[0] < 0;
 }
-
-interface Verdict {
-  class: EquilibriumClass;
-  stability: Stability;
-  decidedBy: DecidedBy;
-  remark: string | null;
-}
-
-const UNDECIDED: Verdict = {
-  class: 'non-hyperbolic',
-  stability: 'undetermined',
-  decidedBy: 'undecided',
-  remark: 'The linearisation decides nothing here, nor do the next terms.'
-};
 
 function atImaginaryPair(spec: ModelSpec, x: number, y: number, j: Matrix): Verdict {
   if (x > 0 && y > 0 && hasConservedQuantity(spec)) {
@@ -196,10 +189,10 @@ function atZeroEigenvalue(spec: ModelSpec, x: number, y: number, j: Matrix, trac
   const manifold = centreManifold(j, higherTerms(spec, x, y));
   const quadratic = signOfWeighed(manifold.quadratic);
   const cubic = signOfWeighed(manifold.cubic);
-  if (quadratic === 0 && cubic === 0) return UNDECIDED;
   if (trace > 0) {
     return { ...base, stability: 'unstable', remark: 'One eigenvalue is zero, the other positive.' };
   }
+  if (quadratic === 0 && cubic === 0) return atDoubleZero(spec, x, y, j);
   if (quadratic === 0) {
     return cubic < 0
       ? { ...base, stability: 'stable', remark: 'Attracts slowly: the cubic term of the centre manifold is negative.' }
@@ -245,7 +238,7 @@ export function classify(
     const stability = kind.startsWith('stable') ? 'stable' : 'unstable';
     verdict = { class: kind, stability, decidedBy: 'linearisation', remark: null };
   } else if (!part.determinantIsZero) verdict = atImaginaryPair(spec, x, y, clean);
-  else if (part.traceIsZero) verdict = UNDECIDED;
+  else if (part.traceIsZero) verdict = atDoubleZero(spec, x, y, clean);
   else verdict = atZeroEigenvalue(spec, x, y, clean, part.trace);
   const slowest = Math.max(eigenvalues[0].re, eigenvalues[1].re);
   const im = eigenvalues[0].im;

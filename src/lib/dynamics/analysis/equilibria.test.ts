@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
-import type { ModelSpec } from '../model/spec';
+import type { ModelSpec, SpeciesSpec } from '../model/spec';
 import { findEquilibria } from './equilibria';
+import { simulate } from './trajectory';
 
 const logistic = (r: number, K: number) => ({ growth: { kind: 'logistic', r, K } }) as const;
 
@@ -117,20 +118,96 @@ describe('beyond the linearisation', () => {
     });
   });
 
-  it('says so when neither the linearisation nor the next terms decide', () => {
-    const [origin] = findEquilibria({
-      interaction: 'competition',
-      first: { ...logistic(1, 10), removal: { effort: 1 } },
-      second: { ...logistic(1, 10), removal: { effort: 1 } },
-      competition: { form: 'coefficients', alpha12: 0.5, alpha21: 0.5 }
-    }).equilibria;
-    expect(origin).toMatchObject({
-      x: 0,
-      y: 0,
-      class: 'non-hyperbolic',
-      stability: 'undetermined',
-      decidedBy: 'undecided'
+  it('knows that swings under a sigmoid response keep their size where e = 2 m h', () => {
+    const model = (e: number): ModelSpec => ({
+      interaction: 'consumer-resource',
+      first: { growth: { kind: 'exponential', r: 0.1 } },
+      second: { mortality: 0.7, removal: { effort: 0.3 } },
+      feeding: { response: 'holling-3', a: 0.1, h: 0.5, e }
     });
+    expect(findEquilibria(model(1)).equilibria[1]).toMatchObject({
+      class: 'centre',
+      stability: 'neutral',
+      decidedBy: 'conserved quantity'
+    });
+    // One whole turn, followed by the integrator, ends where it began.
+    const { period } = findEquilibria(model(1)).equilibria[1]!;
+    const start = { x: 9, y: 0.4472 };
+    const path = simulate(model(1), {
+      start,
+      span: [0, 4 * period!],
+      samples: 2,
+      rtol: 1e-10,
+      thresholds: [{ species: 'first', above: 4.4721 }]
+    });
+    const returns = path.events.map(({ t }) => t);
+    expect(returns.length).toBeGreaterThan(1);
+    const again = simulate(model(1), { start, span: [0, returns[1]!], times: [returns[0]!, returns[1]!], rtol: 1e-10 });
+    expect(again.y[1]! / again.y[0]!).toBeCloseTo(1, 8);
+    expect(findEquilibria(model(1.02)).equilibria[1]!.class).toBe('stable spiral');
+    expect(findEquilibria(model(0.98)).equilibria[1]!.class).toBe('unstable spiral');
+  });
+
+  it('decides the loss of both where removal just balances growth, by a sum that falls or an axis that leaves', () => {
+    const balanced = (first: SpeciesSpec, second: SpeciesSpec) =>
+      findEquilibria({
+        interaction: 'competition',
+        first,
+        second,
+        competition: { form: 'encounters', b12: 0.05, b21: 0.05 }
+      }).equilibria.find(({ x, y }) => x === 0 && y === 0);
+    const atLimit = { ...logistic(1, 10), removal: { effort: 1 } };
+    expect(balanced(atLimit, atLimit)).toMatchObject({ stability: 'stable', decidedBy: 'trapping argument' });
+    const consumer = findEquilibria({
+      interaction: 'consumer-resource',
+      first: atLimit,
+      second: { growth: { kind: 'logistic', r: 0.25, K: 4 }, removal: { effort: 0.25 } },
+      feeding: { response: 'holling-3', a: 0.5, h: 0.1, e: 0.8 }
+    });
+    expect(consumer.equilibria[0]).toMatchObject({ x: 0, y: 0, stability: 'stable', decidedBy: 'trapping argument' });
+  });
+
+  it('lets go of a level that a species by itself leaves on one side', () => {
+    const report = findEquilibria({
+      interaction: 'competition',
+      first: logistic(0.2, 20),
+      second: { ...logistic(0.75, 20), removal: { quota: 3.75 } },
+      competition: { form: 'coefficients', alpha12: 2, alpha21: 4 }
+    });
+    expect(report.equilibria[0]).toMatchObject({
+      x: 0,
+      y: 10,
+      stability: 'unstable',
+      decidedBy: 'motion along an axis'
+    });
+  });
+
+  it('sees a cusp where a fold meets a Hopf point', () => {
+    // Of x (1 - x)(x - A)/A - a x y and y (e a x - m) with quota q on the consumer, q and m such that trace = determinant = 0.
+    const [A, a, e] = [0.25, 1, 1];
+    const slope = (x: number) => (1 + A - 2 * x) / A;
+    // a11 = x slope, a12 = -x, a21 = y, a22 = -a11 as trace is 0; determinant 0 fixes the slope: x slope^2 = y.
+    const gap = (at: number) => at * slope(at) ** 2 - ((1 - at) * (at - A)) / A;
+    let [low, high] = [0.63, 0.99];
+    for (let i = 0; i < 200; i++) {
+      const middle = (low + high) / 2;
+      if (gap(middle) > 0) high = middle;
+      else low = middle;
+    }
+    const at = (low + high) / 2;
+    const level = ((1 - at) * (at - A)) / A;
+    const own = -at * slope(at);
+    // Consumer per head: e a x - m + s/y with its slope -s/y = own, so s = -own y < 0 is a quota; m closes the balance.
+    const quota = own * level;
+    const spec: ModelSpec = {
+      interaction: 'consumer-resource',
+      first: { growth: { kind: 'allee', r: 1, K: 1, A } },
+      second: { mortality: e * a * at - own, removal: { quota } },
+      feeding: { response: 'holling-1', a, e }
+    };
+    const found = findEquilibria(spec).equilibria.filter((point) => Math.abs(point.x - at) < 1e-3 && point.y > 0);
+    expect(found).toHaveLength(1);
+    expect(found[0]).toMatchObject({ multiplicity: 2, stability: 'unstable', decidedBy: 'normal form' });
   });
 });
 
@@ -180,10 +257,13 @@ describe('states held by a quota', () => {
     ]);
   });
 
-  it('lists none for a species that is stocked, and both gone where both have quotas', () => {
+  it('lists none for a species that is stocked by as much, and both gone where both have quotas', () => {
     const base = competing(0.5, 0.5);
-    const stocked = { ...base, first: { ...base.first, removal: { quota: 3 }, stocking: 1 } } as ModelSpec;
-    expect(findEquilibria(stocked).absorbing).toEqual([]);
+    const stocked = (stocking: number) =>
+      findEquilibria({ ...base, first: { ...base.first, removal: { quota: 3 }, stocking } } as ModelSpec).absorbing;
+    expect(stocked(3)).toEqual([]);
+    // What is stocked below the quota is taken as it comes: nothing builds up from 0.
+    expect(stocked(1)).toContainEqual(expect.objectContaining({ x: 0, y: 100, held: ['first'], stability: 'stable' }));
     const both = {
       ...base,
       first: { ...base.first, removal: { quota: 3 } },
@@ -192,6 +272,36 @@ describe('states held by a quota', () => {
     expect(findEquilibria(both).absorbing).toContainEqual(
       expect.objectContaining({ x: 0, y: 0, held: ['first', 'second'], stability: 'stable' })
     );
+  });
+
+  it('calls what remains at the largest quota it can bear half-stable, at its exact level', () => {
+    const atFold = { ...logistic(1, 10), removal: { quota: 2.5 } };
+    const { absorbing } = findEquilibria({
+      interaction: 'competition',
+      first: atFold,
+      second: atFold,
+      competition: { form: 'coefficients', alpha12: 0, alpha21: 0 }
+    });
+    expect(absorbing.map(({ x, y, stability }) => [x, y, stability])).toEqual([
+      [0, 0, 'stable'],
+      [0, 5, 'unstable'],
+      [5, 0, 'unstable']
+    ]);
+  });
+
+  it('loses a consumer whose ceiling follows the resource together with it, stocked or not', () => {
+    const spec: ModelSpec = {
+      interaction: 'consumer-resource',
+      first: { ...logistic(1, 100), removal: { quota: 30 } },
+      second: { growth: { kind: 'leslie', r: 0.3, g: 0.3 }, stocking: 1 },
+      feeding: { response: 'holling-1', a: 0.01, e: 0.1 }
+    };
+    expect(findEquilibria(spec).absorbing).toEqual([
+      expect.objectContaining({ x: 0, y: 0, held: ['first'], stability: 'stable' })
+    ]);
+    const path = simulate(spec, { start: { x: 50, y: 5 }, span: [0, 60], samples: 7 });
+    expect(path.outcome.status).toBe('reached');
+    expect([path.x.at(-1), path.y.at(-1)]).toEqual([0, 0]);
   });
 
   it('claims nothing at x = 0 under leslie growth', () => {

@@ -161,11 +161,11 @@ export function followPath<T>(system: System, request: PathRequest<T>): Path<T> 
       x = 0;
       path.moments.push({ t, x, y, kind: 'ran out', species: 'first', from: 0 });
       forms = ['zero', forms[1]];
-      if (followsResource && y > 0) {
-        // The consumer's ceiling is a multiple of nothing: it is gone in the same instant.
-        path.moments.push({ t, x, y: 0, kind: 'ran out', species: 'second', from: y });
+      if (followsResource) {
+        // The consumer's ceiling is a multiple of nothing: it is gone in the same instant, and so is what is stocked later.
+        if (y > 0) path.moments.push({ t, x, y: 0, kind: 'ran out', species: 'second', from: y });
         y = 0;
-        forms = ['zero', formFor(0, net[1])];
+        forms = ['zero', 'zero'];
       }
     } else {
       y = 0;

@@ -14,7 +14,15 @@ export type EquilibriumClass =
   | 'non-hyperbolic';
 export type Stability = 'stable' | 'unstable' | 'neutral' | 'undetermined';
 export type DecidedBy =
-  'linearisation' | 'conserved quantity' | 'first Lyapunov coefficient' | 'centre manifold' | 'continuum' | 'undecided';
+  | 'linearisation'
+  | 'conserved quantity'
+  | 'first Lyapunov coefficient'
+  | 'centre manifold'
+  | 'trapping argument'
+  | 'motion along an axis'
+  | 'normal form'
+  | 'continuum'
+  | 'undecided';
 
 export interface Complex {
   re: number;
