@@ -12,6 +12,7 @@ export default defineConfig({
   timeout: 120_000,
   expect: { timeout: 30_000 },
   workers: 2,
+  fullyParallel: true,
   retries: 0,
   forbidOnly: true,
   reporter: 'list',
@@ -37,6 +38,11 @@ export default defineConfig({
       ]
     }
   },
+  projects: [
+    { name: 'people', testIgnore: '**/outage.spec.ts' },
+    // Takes the database away from everybody, so it waits until everybody has gone.
+    { name: 'outage', testMatch: '**/outage.spec.ts', dependencies: ['people'], fullyParallel: false }
+  ],
   webServer: {
     command: 'node scripts/e2e-server.mjs',
     url: `${origin}/health/ready`,
