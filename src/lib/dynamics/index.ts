@@ -26,6 +26,7 @@ export {
   type ThresholdReport
 } from './analysis/thresholds';
 export type { BranchOptions } from './analysis/branches';
+export * from './analysis/pathThreshold';
 export * from './analysis/vectorField';
 export { parametersOf, symbolOf, withParameter, type ModelParameter } from './model/parameters';
 export * from './model/equations';
