@@ -46,4 +46,15 @@ describe('positiveRoots', () => {
     expect(positiveRoots([point(-1), point(1), faint])).toMatchObject({ atZero: 0, atInfinity: 1 });
     expect(positiveRoots([faint, faint])).toMatchObject({ vanishes: true, exactlyZero: false });
   });
+
+  it('ends, and says so, where coefficients are too far apart for any bound to be a number', () => {
+    for (const a of [
+      [1e300, -1e-300, 1e-308],
+      [1e-308, -1e300, 1e-300, 1],
+      [5e-324, -1, 1.7e308, -1e-200]
+    ]) {
+      const found = positiveRoots(a.map(point));
+      expect(found.atInfinity).toBeGreaterThanOrEqual(2);
+    }
+  });
 });

@@ -38,7 +38,10 @@ export interface PositiveRoots {
   places: RootPlace[];
   /** Order of the root at 0 within rounding (0: none). */
   atZero: number;
-  /** Degree lost within rounding at the top: a root may have gone to infinity. */
+  /**
+   * Degree lost within rounding at the top: a root may have gone to infinity. 2 more where coefficients are so far apart
+   * that part of the axis could not be searched in the numbers of a computer.
+   */
   atInfinity: number;
   /** Every coefficient is 0 within rounding. */
   vanishes: boolean;
@@ -54,6 +57,9 @@ const CUT: Interval = point(0.4871236459128);
 const REST: Interval = subtract(point(1), CUT);
 /** Two roots nearer than this, relatively, are handed on as a knot. */
 const FINEST = 2 ** -31;
+/** Exponents between which a shell and its ends are ordinary numbers. */
+const LOWEST_SHELL = -1021;
+const HIGHEST_SHELL = 1022;
 /** More pieces at one level than this means a root of high order; going on would only pile them up. */
 const WIDEST_FRONT = 24;
 
@@ -291,15 +297,22 @@ export function positiveRoots(polynomial: Polynomial<Interval>): PositiveRoots {
 
   const singles: Piece[] = [];
   const knots: Piece[] = [];
-  const from = Math.floor(Math.log2(lowest / SHELL_START));
-  const to = Math.ceil(Math.log2(highest / SHELL_START));
+  // Coefficients hundreds of orders of magnitude apart put a bound outside the range of numbers, where no search can go.
+  const from = Math.max(LOWEST_SHELL, Math.floor(Math.log2(lowest / SHELL_START)));
+  const to = Math.min(HIGHEST_SHELL, Math.ceil(Math.log2(highest / SHELL_START)));
+  let beyond = !(lowest > 0) || !Number.isFinite(highest);
   for (let j = from; j <= to; j++) {
     const start = SHELL_START * 2 ** j;
     const onShell = rescale(body, point(start));
-    if (!oneTermRules(onShell)) searchShell(bernstein(onShell, ONE), start, singles, knots);
+    if (!onShell.every(({ lo, hi }) => Number.isFinite(lo) && Number.isFinite(hi))) beyond = true;
+    else if (!oneTermRules(onShell)) searchShell(bernstein(onShell, ONE), start, singles, knots);
   }
   const places = [...singles.map((piece) => refine(body, piece.from, piece.to)), ...joinKnots(body, knots)];
-  return { ...base, places: places.sort((p, q) => p.value - q.value) };
+  return {
+    ...base,
+    atInfinity: base.atInfinity + (beyond ? 2 : 0),
+    places: places.sort((p, q) => p.value - q.value)
+  };
 }
 
 /** Encloses the value of a polynomial over [lo, hi]. */
