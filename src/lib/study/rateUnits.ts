@@ -276,7 +276,10 @@ export function toStudyUnit(
 }
 
 function finite(value: number, derivative: number): Converted {
-  return Number.isFinite(value) && Number.isFinite(derivative)
+  const size = Math.abs(value);
+  // The engine's own limits; a model of such numbers could be typed but not computed.
+  const isUsable = size === 0 || (size >= 1e-50 && size <= 1e50);
+  return isUsable && Number.isFinite(derivative)
     ? { ok: true, value, derivative }
     : { ok: false, message: 'This number is too large or too small to work with: check it and its unit.' };
 }

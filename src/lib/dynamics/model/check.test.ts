@@ -37,6 +37,19 @@ describe('checkModel', () => {
     ]);
   });
 
+  it('refuses numbers that no computer can multiply with one another', () => {
+    expect(paths({ ...competition, first: { growth: { kind: 'logistic', r: 1e-308, K: 1e300 } } })).toEqual([
+      'first.growth.r',
+      'first.growth.K'
+    ]);
+    expect(paths({ ...feeding, second: { mortality: 5e-324, stocking: 1.7e308 } })).toEqual([
+      'second.mortality',
+      'second.stocking'
+    ]);
+    expect(paths({ ...feeding, first: { growth: { kind: 'exponential', r: -1e51 } } })).toEqual(['first.growth.r']);
+    expect(paths({ ...competition, first: { growth: { kind: 'logistic', r: 1e-50, K: 1e50 } } })).toEqual([]);
+  });
+
   it('allows any finite rate for exponential growth', () => {
     expect(paths({ ...feeding, first: { growth: { kind: 'exponential', r: -0.3 } } })).toEqual([]);
   });

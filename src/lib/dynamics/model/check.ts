@@ -6,10 +6,20 @@ function isNumber(value: unknown): value is number {
   return typeof value === 'number' && Number.isFinite(value);
 }
 
+/** Numbers further from 1 than this cannot be multiplied with one another in the numbers of a computer. */
+const LARGEST = 1e50;
+const BEYOND = 'must lie between 1e-50 and 1e50 in size to be computed with.';
+
+function isBeyond(value: number): boolean {
+  const size = Math.abs(value);
+  return size !== 0 && (size > LARGEST || size < 1 / LARGEST);
+}
+
 function positive(complain: Complain, path: string, value: unknown): void {
   if (value === undefined) complain(path, 'is needed here.');
   else if (!isNumber(value)) complain(path, 'must be a finite number.');
   else if (value <= 0) complain(path, 'must be greater than 0.');
+  else if (isBeyond(value)) complain(path, BEYOND);
 }
 
 function notNegative(complain: Complain, path: string, value: unknown, optional: boolean): void {
@@ -17,6 +27,7 @@ function notNegative(complain: Complain, path: string, value: unknown, optional:
     if (!optional) complain(path, 'is needed here.');
   } else if (!isNumber(value)) complain(path, 'must be a finite number.');
   else if (value < 0) complain(path, 'must be 0 or greater.');
+  else if (isBeyond(value)) complain(path, BEYOND);
 }
 
 function checkGrowth(complain: Complain, path: string, growth: GrowthSpec | ConsumerGrowthSpec): void {
@@ -24,6 +35,7 @@ function checkGrowth(complain: Complain, path: string, growth: GrowthSpec | Cons
     case 'exponential':
       if (growth.r === undefined) complain(`${path}.r`, 'is needed here.');
       else if (!isNumber(growth.r)) complain(`${path}.r`, 'must be a finite number.');
+      else if (isBeyond(growth.r)) complain(`${path}.r`, BEYOND);
       return;
     case 'logistic':
       positive(complain, `${path}.r`, growth.r);
