@@ -12,6 +12,7 @@ import { NewThread } from '$lib/contracts/comment';
 import { Problem } from '$lib/contracts/problem';
 import { RatePatch } from '$lib/contracts/rateChange';
 import { StudyListQuery } from '$lib/contracts/study';
+import { ThresholdsAnswer, ThresholdsRequest } from '$lib/contracts/thresholds';
 import { EquilibriaRequest, TrajectoryRequest } from '$lib/contracts/trajectory';
 import { ENGINE_VERSION } from '$lib/dynamics';
 
@@ -23,6 +24,8 @@ export const openApiSchemas = {
   EquilibriaAnswer,
   TrajectoryRequest,
   TrajectoryAnswer,
+  ThresholdsRequest,
+  ThresholdsAnswer,
   StudyListAnswer,
   StudyAnswer,
   StudyPathsAnswer,
@@ -34,7 +37,13 @@ export const openApiSchemas = {
 } as const;
 type SchemaName = keyof typeof openApiSchemas;
 
-const incoming: readonly SchemaName[] = ['EquilibriaRequest', 'TrajectoryRequest', 'RatePatch', 'NewThread'];
+const incoming: readonly SchemaName[] = [
+  'EquilibriaRequest',
+  'TrajectoryRequest',
+  'ThresholdsRequest',
+  'RatePatch',
+  'NewThread'
+];
 
 function schemaOf(name: SchemaName): Json {
   const { $schema: _dialect, ...schema } = z.toJSONSchema(openApiSchemas[name], {
@@ -121,6 +130,14 @@ export function openApiDocument(): Json {
           parameters: [units],
           requestBody: body('TrajectoryRequest'),
           responses: responses(200, 'The path.', { ...json('TrajectoryAnswer'), ...csv }, [401, 403, 422])
+        }
+      },
+      '/api/v1/thresholds': {
+        post: {
+          operationId: 'findThresholds',
+          summary: 'Branches of equilibria over one parameter, and the values at which they change',
+          requestBody: body('ThresholdsRequest'),
+          responses: responses(200, 'The branches and thresholds.', json('ThresholdsAnswer'), [401, 403, 422])
         }
       },
       '/api/v1/studies': {
