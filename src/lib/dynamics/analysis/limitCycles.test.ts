@@ -132,4 +132,12 @@ describe('limitCycles', () => {
     expect(mean(path.y) / cycle!.yMean).toBeCloseTo(1, 7);
     expect(shareBelow(cycle!, 'first', 3)).toBeCloseTo(path.x.filter((v) => v < 3).length / 4001, 3);
   });
+
+  it('stops when it is told to', () => {
+    const spec = rosenzweig(0.07, 10, 1 / 750, 250, 15, 0.025);
+    let asked = 0;
+    const shouldStop = () => (asked += 1) > 0;
+    expect(limitCycles(spec, interior(spec), { shouldStop })).toEqual([]);
+    expect(asked).toBeGreaterThan(0);
+  });
 });

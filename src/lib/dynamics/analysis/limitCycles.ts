@@ -80,7 +80,7 @@ function resourceCeiling(system: System, xE: number): number {
   return high;
 }
 
-function sectionThrough(spec: ModelSpec, system: System, point: Equilibrium): Section {
+function sectionThrough(spec: ModelSpec, system: System, point: Equilibrium, shouldStop?: () => boolean): Section {
   const c = coordinatesFor(system, [
     formFor(point.x, netAdditionOf(spec, 'first')),
     formFor(point.y, netAdditionOf(spec, 'second'))
@@ -108,7 +108,12 @@ function sectionThrough(spec: ModelSpec, system: System, point: Equilibrium): Se
     turn(s, rtol) {
       const solution = integrate(
         { rhs: c.rhs, jacobian: c.jacobian, y0: start(s), span: [0, horizon], events },
-        { ...c.tolerances(rtol, rtol * Math.min(point.x, point.y)), maxSteps: MOST_STEPS, times: [] }
+        {
+          ...c.tolerances(rtol, rtol * Math.min(point.x, point.y)),
+          maxSteps: MOST_STEPS,
+          times: [],
+          ...(shouldStop && { shouldStop })
+        }
       );
       if (solution.outcome.status !== 'event' || solution.outcome.event !== 0) return null;
       return { s: Math.log(c.x(solution.yEnd) / point.x), time: solution.tEnd };
@@ -247,10 +252,14 @@ function measure(system: System, section: Section, around: number, s: number, pe
  *   every bounded path settles, and none for the classical model, whose orbits are all closed.
  *   One strongly attracting cycle is proven to be the only one around its equilibrium; otherwise a grid of starts is
  *   refined by bracketing, and two cycles nearer to each other than the grid may both be missed.
- *   Never throws.
+ *   Where `shouldStop` said yes, only those found until then. Never throws.
  * @source strogatz2015 §8.7 (return map), kuznetsov2004 §1.5 (multiplier by Liouville's formula), hofbauerSigmund1998 §3.4
  */
-export function limitCycles(spec: ModelSpec, report: EquilibriaReport): LimitCycle[] {
+export function limitCycles(
+  spec: ModelSpec,
+  report: EquilibriaReport,
+  options: { shouldStop?: () => boolean } = {}
+): LimitCycle[] {
   if (spec.interaction === 'competition') return [];
   const system = compile(spec);
   const found: LimitCycle[] = [];
@@ -258,7 +267,7 @@ export function limitCycles(spec: ModelSpec, report: EquilibriaReport): LimitCyc
     if (!point.feasible || !(point.x > 0) || !(point.y > 0)) return;
     // A closed orbit goes round points whose indices sum to 1, hence round at least one that is no saddle.
     if (!(point.determinant > 0) || point.class === 'centre') return;
-    const section = sectionThrough(spec, system, point);
+    const section = sectionThrough(spec, system, point, options.shouldStop);
     if (!(section.sMax > INNERMOST)) return;
     let from = INNERMOST;
     while (from > SMALLEST && point.trace * gainAt(section, from) < 0) from /= 10;

@@ -211,6 +211,7 @@ export function separatrices(
         if (!(first.x > 0) || !(first.y > 0)) continue;
         // The slowest way off the saddle takes a few tens of its own times; the rest of the plane, some hundreds.
         const horizon = 1000 / Math.abs(lambda);
+        if (!Number.isFinite(horizon)) continue;
         const branch = trace(system, report, saddle, first, kind === 'stable' ? -1 : 1, horizon, full);
         found.push({ saddle: index, kind, ...branch });
       }

@@ -75,6 +75,8 @@ export interface EquilibriaView {
 
 /** Standard normal quantile of 95 %. */
 const Z95 = 1.6448536269514722;
+/** Milliseconds for the paths on the plane, all together. */
+const PATHS_MS = 1500;
 /** Points along a path that a plane of some 500 pixels can show. */
 const PATH_POINTS = 401;
 
@@ -149,7 +151,7 @@ function findingsOf(
     verdict.kind === 'none'
       ? []
       : factsFor(question, report, { kind: verdict.kind }, { model, cycles, outcome, errors });
-  const shouldStop = deadline();
+  const shouldStop = deadline(PATHS_MS);
   const paths = content.starts.map(({ label, x, y }) => {
     const path = simulate(model, {
       start: { x, y },

@@ -1,6 +1,6 @@
 import type { RunSettings, Start } from '$lib/contracts/content';
 import { simulate, type ModelSpec, type TrajectoryResult } from '$lib/dynamics';
-import { checkPath } from '../numerics/trajectory';
+import { checkPath, CHECK_MS } from '../numerics/trajectory';
 import type { CrossCheck } from '../numerics/crossCheck';
 import { ANSWER_MS, deadline } from '../numerics/deadline';
 import { ResultCache } from './cache';
@@ -19,6 +19,7 @@ export function pathsFor(model: ModelSpec, starts: readonly Start[], run: RunSet
   const key = fingerprintOf({ model, starts, run });
   const follow = (): Path[] => {
     const shouldStop = deadline(ANSWER_MS);
+    const checksEnd = performance.now() + ANSWER_MS + CHECK_MS;
     return starts.map((start) => {
       const result = simulate(model, {
         start: { x: start.x, y: start.y },
@@ -34,7 +35,7 @@ export function pathsFor(model: ModelSpec, starts: readonly Start[], run: RunSet
         start,
         result,
         crossCheck: reached
-          ? checkPath(model, result, run.rtol, run.atol)
+          ? checkPath(model, result, run, Math.min(CHECK_MS, checksEnd - performance.now()))
           : { method: 'odex', largestRelativeDifference: null, reason: 'The run did not reach its end.' }
       };
     });

@@ -18,16 +18,30 @@ export interface ModelResults {
   cycles: LimitCycle[];
 }
 
-const models = new ResultCache<ModelResults>(64);
+const models = new ResultCache<ModelResults & { late: boolean }>(64);
+const hurried = new ResultCache<ModelResults & { late: boolean }>(16);
 const planes = new ResultCache<PlaneResults>(64);
 const ends = new ResultCache<{ outcome: Outcome | null }>(128);
 
+/** The search for cycles may take this long, some ten times what a hard model needs. */
+const CYCLES_MS = 3000;
+
 /** Equilibria and cycles of a model. */
 export function resultsOf(model: ModelSpec): ModelResults {
-  return models.get(fingerprintOf(model), () => {
+  const key = fingerprintOf(model);
+  const find = () => {
+    const isLate = deadline(CYCLES_MS);
     const report = findEquilibria(model);
-    return { report, cycles: limitCycles(model, report) };
-  });
+    const cycles = limitCycles(model, report, { shouldStop: isLate });
+    return { report, cycles, late: isLate() };
+  };
+  // What ran out of time may be better another day, but a page that asks for it five times must not pay for each.
+  const minute = Math.floor(Date.now() / 60_000);
+  return models.get(
+    key,
+    () => hurried.get(`${key} ${minute}`, find),
+    ({ late }) => !late
+  );
 }
 
 /** Window, isoclines, divides and direction field of a model, in a window that holds its starts as well. */
