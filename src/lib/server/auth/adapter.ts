@@ -19,14 +19,17 @@ export const adapter: Adapter = {
     return (await Session.findAll({ where: { userId } })).map((row) => toDatabaseSession(row, row.id));
   },
   async setSession(session) {
-    const { ip = '', userAgent = '' } = session.attributes;
-    await Session.create({
-      id: hashSecret(session.id),
-      userId: session.userId,
-      expiresAt: session.expiresAt,
-      ip: ip.slice(0, 64),
-      userAgent: userAgent.slice(0, 300)
-    });
+    const { ip = '', userAgent = '', transaction } = session.attributes;
+    await Session.create(
+      {
+        id: hashSecret(session.id),
+        userId: session.userId,
+        expiresAt: session.expiresAt,
+        ip: ip.slice(0, 64),
+        userAgent: userAgent.slice(0, 300)
+      },
+      { transaction }
+    );
   },
   async updateSessionExpiration(id, expiresAt) {
     await Session.update({ expiresAt }, { where: { id: hashSecret(id) } });

@@ -8,10 +8,17 @@ import { adapter } from './adapter';
 import { loadActor } from './loadActor';
 import { hashSecret } from './secrets';
 
+/** Where a session is started from, and in which transaction: none of it outlives the row. */
+export interface SessionOrigin {
+  ip?: string;
+  userAgent?: string;
+  transaction?: Transaction;
+}
+
 declare module 'lucia' {
   interface Register {
     Lucia: Lucia;
-    DatabaseSessionAttributes: { ip?: string; userAgent?: string };
+    DatabaseSessionAttributes: SessionOrigin;
   }
 }
 
@@ -49,7 +56,7 @@ export function blankSessionCookie(): SessionCookie {
 }
 
 /** Signs a browser in and returns its cookie. */
-export async function startSession(userId: string, from: { ip: string; userAgent: string }): Promise<SessionCookie> {
+export async function startSession(userId: string, from: SessionOrigin): Promise<SessionCookie> {
   const session = await lucia().createSession(userId, from);
   return toCookie(lucia().createSessionCookie(session.id));
 }
@@ -72,8 +79,8 @@ export async function resolveSession(id: string): Promise<ResolvedSession | null
 }
 
 /** Ends one session by the secret of its cookie. */
-export async function endSession(id: string): Promise<void> {
-  await lucia().invalidateSession(id);
+export async function endSession(id: string, transaction: Transaction): Promise<void> {
+  await Session.destroy({ where: { id: hashSecret(id) }, transaction });
 }
 
 /** Ends every session of a person, but for the one whose cookie secret is given. Returns how many ended. */

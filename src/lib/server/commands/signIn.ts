@@ -1,5 +1,5 @@
 import { recordAudit } from '../audit/record';
-import { startSession, type SessionCookie } from '../auth/sessions';
+import { endSession, startSession, type SessionCookie } from '../auth/sessions';
 import { verifyPassword } from '../auth/passwords';
 import { countTry, forgetTries } from '../api/rateLimit';
 import type { Context } from '../context';
@@ -11,13 +11,16 @@ export interface Credentials {
   email: string;
   password: string;
   userAgent: string;
+  /** The secret of the session this browser held until now, which the new one takes the place of. */
+  replaces?: string | null;
 }
 
 /**
  * Signs a person in and returns the cookie to set. Throws 429 after too many tries, counted by address and e-mail and,
  * more loosely, by address alone; and one and the same 422 whether the e-mail or the password is wrong.
  */
-export async function signIn(context: Context, { email, password, userAgent }: Credentials): Promise<SessionCookie> {
+export async function signIn(context: Context, credentials: Credentials): Promise<SessionCookie> {
+  const { email, password, userAgent, replaces } = credentials;
   const person = `${context.ip} ${email}`;
   await countTry('signInAddress', context.ip);
   await countTry('signIn', person);
@@ -32,6 +35,7 @@ export async function signIn(context: Context, { email, password, userAgent }: C
       subjectId: user.id,
       by: { userId: user.id, name: user.name }
     });
-    return startSession(user.id, { ip: context.ip, userAgent });
+    if (replaces) await endSession(replaces, transaction);
+    return startSession(user.id, { ip: context.ip, userAgent, transaction });
   });
 }

@@ -9,6 +9,6 @@ export async function signOut(context: Context, sessionId: string | null): Promi
   if (!sessionId || !actor) return;
   await withTransaction(async (transaction) => {
     await recordAudit(context, transaction, { act: 'session.end', subjectType: 'user', subjectId: actor.userId });
-    await endSession(sessionId);
+    await endSession(sessionId, transaction);
   });
 }

@@ -18,7 +18,7 @@ export const actions: Actions = {
     SignIn,
     async (form, event, context) => {
       const userAgent = event.request.headers.get('user-agent') ?? '';
-      const cookie = await signIn(context, { ...form.data, userAgent });
+      const cookie = await signIn(context, { ...form.data, userAgent, replaces: event.locals.session?.id ?? null });
       event.cookies.set(cookie.name, cookie.value, cookie.attributes);
       redirect(303, safeNext(event.url.searchParams.get('next')));
     },
