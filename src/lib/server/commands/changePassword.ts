@@ -3,6 +3,7 @@ import { hashPassword, verifyPassword, weaknessOf } from '../auth/passwords';
 import { endSessionsOf } from '../auth/sessions';
 import { countTry } from '../api/rateLimit';
 import type { Context } from '../context';
+import { PasswordReset } from '../db/models/PasswordReset';
 import { User } from '../db/models/User';
 import { withTransaction } from '../db/transaction';
 import { invalid, refusal } from '../errors';
@@ -31,6 +32,8 @@ export async function changePassword(
   const passwordHash = await hashPassword(input.password);
   await withTransaction(async (transaction) => {
     await user.update({ passwordHash }, { transaction });
+    // A link asked for before, perhaps by somebody else, must not undo this.
+    await PasswordReset.update({ usedAt: context.now() }, { where: { userId, usedAt: null }, transaction });
     await endSessionsOf(userId, { except: input.sessionId, transaction });
     await recordAudit(context, transaction, { act: 'password.change', subjectType: 'user', subjectId: userId });
   });

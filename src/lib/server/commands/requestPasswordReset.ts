@@ -16,7 +16,9 @@ const HOLDS_MS = 60 * 60_000;
  * way: hence the mail is not waited for, and `delivery` is for tests alone. Throws 429 after too many tries.
  */
 export async function requestPasswordReset(context: Context, email: string): Promise<{ delivery: Promise<void> }> {
-  await countTry('reset', `${context.ip} ${email}`);
+  // Many addresses from one machine, and one address from many machines: neither may fill a mailbox or try out who exists.
+  await countTry('signInAddress', `reset ${context.ip}`);
+  await countTry('reset', email);
   const user = await User.findOne({ where: { email } });
   return { delivery: user ? deliver(context, user) : Promise.resolve() };
 }
