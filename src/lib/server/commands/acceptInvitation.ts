@@ -1,4 +1,4 @@
-import type { Transaction } from 'sequelize';
+import { UniqueConstraintError, type Transaction } from 'sequelize';
 import { recordAudit } from '../audit/record';
 import { loadActor } from '../auth/loadActor';
 import { hashPassword, weaknessOf } from '../auth/passwords';
@@ -6,9 +6,11 @@ import { hashSecret } from '../auth/secrets';
 import type { Context } from '../context';
 import { Invitation } from '../db/models/Invitation';
 import { Membership } from '../db/models/Membership';
+import { Study } from '../db/models/Study';
 import { User } from '../db/models/User';
 import { withTransaction } from '../db/transaction';
 import { invalid, refusal } from '../errors';
+import { can } from '../policies/ability';
 import { grantShare } from './grantShare';
 
 export interface NewPerson {
@@ -22,7 +24,25 @@ export interface Accepted {
   path: string;
 }
 
-/** The open invitation of a link. Throws 404 when it is unknown, used, withdrawn or past its date. */
+/** Whether its sender could still send it: one who has left, or may no longer share the study, asks nobody in. */
+async function isStillMeant(invitation: Invitation, transaction?: Transaction): Promise<boolean> {
+  const { workspaceId, workspaceRole, studyId } = invitation;
+  const sender = await loadActor(invitation.invitedById, 'system', undefined, transaction);
+  if (workspaceRole) {
+    if (!workspaceId || !can(sender, 'workspace.manageMembers', { kind: 'workspace', workspaceId })) return false;
+  }
+  if (!studyId) return true;
+  const study = await Study.findByPk(studyId, { transaction });
+  if (!study || study.deletedAt !== null) return false;
+  // No share gives the right to share, so the sender's own need not be looked up.
+  const subject = { kind: 'study', workspaceId: study.workspaceId, ownerId: study.ownerId, shares: [] } as const;
+  return can(sender, 'study.share', subject);
+}
+
+/**
+ * The open invitation of a link. Throws 404 when it is unknown, used, withdrawn, past its date, to a study that is deleted,
+ * or from somebody who could not send it any more.
+ */
 export async function findInvitation(context: Context, token: string, transaction?: Transaction): Promise<Invitation> {
   const invitation = await Invitation.findOne({
     where: { tokenHash: hashSecret(token), acceptedAt: null, withdrawnAt: null },
@@ -31,6 +51,7 @@ export async function findInvitation(context: Context, token: string, transactio
     ...(transaction ? { lock: transaction.LOCK.UPDATE } : {})
   });
   if (!invitation || invitation.expiresAt <= context.now()) throw refusal('invitation.notFound');
+  if (!(await isStillMeant(invitation, transaction))) throw refusal('invitation.notFound');
   return invitation;
 }
 
@@ -49,7 +70,12 @@ async function personOf(
   if (user || !person) throw refusal('invitation.signInFirst');
   const weakness = weaknessOf(person.password, { email, name: person.name });
   if (weakness) throw invalid('password', weakness);
-  return User.create({ email, name: person.name, passwordHash: await hashPassword(person.password) }, { transaction });
+  const passwordHash = await hashPassword(person.password);
+  return User.create({ email, name: person.name, passwordHash }, { transaction }).catch((error: unknown) => {
+    // Another invitation of the same address was accepted at the same moment.
+    if (error instanceof UniqueConstraintError) throw refusal('invitation.signInFirst', { cause: error });
+    throw error;
+  });
 }
 
 async function joinWorkspace(

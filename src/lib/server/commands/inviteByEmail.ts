@@ -2,7 +2,6 @@ import { Op, type Transaction } from 'sequelize';
 import type { StudyRole, WorkspaceRole } from '$lib/contracts/people';
 import { recordAudit } from '../audit/record';
 import { hashSecret, newSecret } from '../auth/secrets';
-import { countTry } from '../api/rateLimit';
 import type { Context } from '../context';
 import { Invitation } from '../db/models/Invitation';
 import { Study } from '../db/models/Study';
@@ -26,11 +25,11 @@ export interface InvitationTo {
 /**
  * Invites an address by e-mail inside the transaction of the act that decided it; decides no permission itself. An open
  * invitation of the same address to the same thing is replaced. The mail goes out before the commit: a mail that is not
- * taken (503) undoes the invitation, while a link whose commit failed merely leads nowhere. Throws 429 after too many.
+ * taken (503) undoes the invitation, while a link whose commit failed merely leads nowhere. Its callers count the tries
+ * before they open the transaction, since counting needs a connection of its own.
  */
 export async function inviteByEmail(context: Context, transaction: Transaction, to: InvitationTo): Promise<Invitation> {
   const actor = requireActor(context.actor);
-  await countTry('invitation', actor.userId);
   const email = to.email.trim().toLowerCase();
   const study = to.studyId ? await Study.findByPk(to.studyId, { transaction }) : null;
   if (to.studyId && !study) throw refusal('study.notFound');

@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { Email } from '$lib/contracts/people';
 import { studyRoles } from '$lib/contracts/study';
+import { countTry } from '../api/rateLimit';
 import type { Context } from '../context';
 import { StudyShare } from '../db/models/StudyShare';
 import { User } from '../db/models/User';
@@ -31,6 +32,8 @@ export async function shareStudy(
   const user = await User.findOne({ where: { email } });
   if (user?.id === study.ownerId)
     throw refusal('share.owner', { issues: [{ path: 'email', message: 'The owner already has the study.' }] });
+  // A share sends a mail as an invitation does: neither may be used to fill somebody's mailbox.
+  await countTry('invitation', actor.userId);
   return withTransaction(async (transaction) => {
     if (!user) {
       await inviteByEmail(context, transaction, { email, studyId: study.id, studyRole: role });
