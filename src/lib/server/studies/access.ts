@@ -5,7 +5,7 @@ import { StudyRevision } from '../db/models/StudyRevision';
 import { StudyShare } from '../db/models/StudyShare';
 import { refusal } from '../errors';
 import { isUuid } from '../isUuid';
-import { abilitiesOf, authorize, requireActor, type StudyAct, type StudySubject } from '../policies/ability';
+import { abilitiesOf, authorize, can, requireActor, type StudyAct, type StudySubject } from '../policies/ability';
 
 export interface OpenStudy {
   study: Study;
@@ -48,6 +48,8 @@ export async function openStudy(
     shares: shares.map(({ userId, role }) => ({ userId, role })),
     openerId: options.openerId ?? null
   };
+  // A deleted study can be read by nobody, so that whoever may not bring it back is told that there is none.
+  if (options.deleted && !can(actor, act, subject)) throw refusal('study.notFound');
   authorize(actor, act, subject);
   return { study, actor, subject, abilities: abilitiesNow(abilitiesOf(actor, subject), study.state) };
 }
