@@ -6,6 +6,7 @@ export { compile } from './model/compile';
 export { checkModel } from './model/check';
 export { integrate } from './solve/integrate';
 export * from './analysis/trajectory';
+export type { AppliedPulse, Pulse } from './analysis/schedule';
 export { coordinatesFor, formFor, netAdditionOf, type Form } from './analysis/coordinates';
 export { findEquilibria, type EquilibriaOptions } from './analysis/equilibria';
 export * from './analysis/limitCycles';

@@ -7,6 +7,7 @@ import type { Outcome } from '../solve/problem';
 import { ENGINE_VERSION } from '../version';
 import type { Coordinates } from './coordinates';
 import { followPath, levelOf, type Watched } from './path';
+import { simulateSchedule, type AppliedPulse, type Pulse } from './schedule';
 
 export interface Threshold {
   species: SpeciesKey;
@@ -30,6 +31,8 @@ export interface TrajectoryOptions {
   /** Wanted absolute accuracy, default 1e-10; only a species under a quota makes use of it. */
   atol?: number;
   thresholds?: readonly Threshold[];
+  /** Animals added or taken at set times inside the span; an output time at one shows the state after it. */
+  schedule?: readonly Pulse[];
   maxSteps?: number;
   shouldStop?: () => boolean;
 }
@@ -56,6 +59,8 @@ export interface TrajectoryResult {
   /** What went wrong or what to keep in mind, in one sentence; null when there is nothing to say. */
   remark: string | null;
   stiff: boolean;
+  /** What each act of a schedule came to, in order; absent without one. */
+  pulses?: AppliedPulse[];
   engine: string;
 }
 
@@ -177,6 +182,10 @@ export function simulate(spec: ModelSpec, options: TrajectoryOptions): Trajector
   requireValid(options);
   const { start, span, thresholds = [] } = options;
   const times = Float64Array.from(options.times ?? equallySpaced(span, options.samples ?? 201));
+  if (options.schedule && options.schedule.length > 0) {
+    const { schedule, ...plain } = options;
+    return simulateSchedule(spec, plain, Array.from(times), schedule, simulate);
+  }
   const fast = simulateFast(spec, options, times);
   if (fast !== null) return fast;
   const system = compile(spec);
