@@ -68,6 +68,7 @@ function seedsOf(
 ): { seeds: Seed[]; doubts: string[]; sizes: [number, number]; seeded: number } {
   const seeds: Seed[] = [];
   const doubts: string[] = [];
+  const curves: number[] = [];
   let sizeX = 0;
   let sizeY = 0;
   let seeded = 0;
@@ -77,13 +78,16 @@ function seedsOf(
     const report = findEquilibria(spec);
     seeded += 1;
     if (!report.complete) doubts.push(`the equilibria at ${Number(p.toPrecision(6))} are not proven to be all`);
-    if (report.continua.length > 0) doubts.push(`at ${Number(p.toPrecision(6))} a whole curve of states is at rest`);
+    if (report.continua.length > 0) curves.push(Number(p.toPrecision(6)));
     for (const { x, y } of report.equilibria as Equilibrium[]) {
       seeds.push({ face: faceKeyOf(family, x, y), q, x, y, branch: null });
       sizeX = Math.max(sizeX, x);
       sizeY = Math.max(sizeY, y);
     }
   }
+  if (curves.length === 1) doubts.push(`at ${curves[0]} a whole curve of states is at rest`);
+  else if (curves.length > 1)
+    doubts.push(`at ${curves.length} values from ${curves[0]} on a whole curve of states is at rest`);
   return { seeds, doubts, sizes: [sizeX || 1, sizeY || 1], seeded };
 }
 
@@ -147,6 +151,12 @@ function snap(family: Family, face: Face, z: Float64Array, end: BranchEnd): void
     z[last] = Math.abs(z[last]! - family.q0) < Math.abs(z[last]! - family.q1) ? family.q0 : family.q1;
   else if (end === 'x = 0') z[0] = 0;
   else if (end === 'y = 0') z[face.key === 'both' ? 1 : 0] = 0;
+  if (face.key === 'both' && end !== 'range') {
+    // Both may be lost at once, as where a ceiling follows the resource.
+    const scale = new Float64Array(3);
+    face.curve.scale(z, scale);
+    for (const i of [0, 1]) if (Math.abs(z[i]!) < 1e-12 * scale[i]!) z[i] = 0;
+  }
   // An axis that is met at the very end of the range is met exactly there.
   for (const q of [family.q0, family.q1]) if (Math.abs(z[last]! - q) < 1e-12 * (family.q1 - family.q0)) z[last] = q;
 }
@@ -276,6 +286,11 @@ interface Meeting {
   q: number;
 }
 
+/** A ceiling that follows the resource leaves the model undefined without it: nothing is at rest at x = 0. */
+function followsResource(family: Family): boolean {
+  return family.at(family.q0).spec.second.growth?.kind === 'leslie';
+}
+
 /** Growth per head of the absent species along a branch on an axis: zero where the branch of the inside meets it. */
 export function invasionRates(family: Family, face: Face): { into: FaceKey; rate: (z: Float64Array) => number }[] {
   const j = new Float64Array(4);
@@ -307,7 +322,7 @@ function meetings(family: Family, { face, points, ends }: Branch): Meeting[] {
     const point = points[i === 0 ? 0 : points.length - 1]!;
     const { x, y } = face.plane(point.z);
     const key = faceKeyOf(family, x, y);
-    if (key !== face.key) found.push({ face: key, x, y, q: face.q(point.z) });
+    if (key !== face.key && !(x === 0 && followsResource(family))) found.push({ face: key, x, y, q: face.q(point.z) });
   });
   for (const { into, rate } of invasionRates(family, face)) {
     for (let i = 1; i < points.length; i++) {
