@@ -1,4 +1,5 @@
 /** The one public door of the study: what the server and the browser both know about a question, its rates and its model. */
+import '$lib/contracts/plainWords';
 export * from './format';
 export * from './units';
 export * from './rateUnits';
