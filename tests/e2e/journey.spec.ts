@@ -148,7 +148,7 @@ test('from a question to a reviewed study', async ({ page, browser }) => {
   const refused = await outside.request.patch(`/api/v1/studies/${studyId}/rates`, {
     headers: ownOrigin(outside),
     data: {
-      revision: before.revision,
+      revision: before.revision.number,
       rate: {
         path: 'competition.alpha12',
         value: 5,

@@ -2,7 +2,7 @@
 import { readFileSync } from 'node:fs';
 import { expect, test } from '@playwright/test';
 import { at, ownOrigin, signIn, visit } from './people';
-import { createStudy, entry, rates } from './studies';
+import { createStudy, entry, rates, revisionOf } from './studies';
 
 const { controlUrl } = JSON.parse(readFileSync('.sedgeline/e2e.json', 'utf8')) as { controlUrl: string };
 
@@ -47,8 +47,7 @@ test('a database that is away is said plainly, and found again without anybodyâ€
   }
 
   await expect.poll(async () => (await page.request.get('/health/ready')).status(), { timeout: 60_000 }).toBe(200);
-  const study = (await (await page.request.get(`/api/v1/studies/${id}`)).json()) as { revision: number };
-  expect(study.revision).toBe(8);
+  expect(await revisionOf(page, id)).toBe(8);
   // The person is still signed in, and the text typed before can be saved now.
   await visit(page, `/studies/${id}/rates?edit=first.growth.r`);
   await form.getByLabel('Value', { exact: true }).fill('0.71');

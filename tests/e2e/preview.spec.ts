@@ -1,7 +1,7 @@
 /** Trying a value before it is saved; and the same work in a browser that runs no script. */
 import { expect, test } from '@playwright/test';
 import { at, signIn, visit } from './people';
-import { createStudy, question } from './studies';
+import { createStudy, question, revisionOf } from './studies';
 
 test('a slider previews, says so, can be put back and can be saved', async ({ page }) => {
   await signIn(page, at('ecologist'));
@@ -29,15 +29,13 @@ test('a slider previews, says so, can be put back and can be saved', async ({ pa
   await expect(verdict).toHaveText(asSaved.verdict);
 
   // The number beside the slider does the same; nothing has reached the server until it is saved.
-  const revision = async () =>
-    ((await (await page.request.get(`/api/v1/studies/${id}`)).json()) as { revision: number }).revision;
-  const before = await revision();
+  const before = await revisionOf(page, id);
   await page.getByRole('textbox', { name: 'Value', exact: true }).fill('500');
   await expect(note).toBeVisible();
-  expect(await revision()).toBe(before);
+  expect(await revisionOf(page, id)).toBe(before);
   await page.getByRole('button', { name: /^Save this value/ }).click();
   await expect(note).toHaveCount(0);
-  expect(await revision()).toBe(before + 1);
+  expect(await revisionOf(page, id)).toBe(before + 1);
   await visit(page, `/studies/${id}/rates`);
   const row = page.locator('tr[id="rate-first.growth.K"]');
   await expect(row).toContainText('500');

@@ -1,7 +1,7 @@
 /** The list of studies, and two people at one study. */
 import { expect, test, type Page } from '@playwright/test';
 import { asForm, at, ownOrigin, pageOf, signIn, visit } from './people';
-import { createStudy, entry, question, saveRate } from './studies';
+import { createStudy, entry, question, revisionOf, saveRate } from './studies';
 
 /** A word that no other test uses, so that a list holds what this one made. */
 const mark = () => `mark${Date.now().toString(36)}${Math.floor(Math.random() * 1e6).toString(36)}`;
@@ -154,8 +154,7 @@ test('two people at one study: the second to save sees the difference, keeps the
   await expect(notice).toContainText('444');
   await expect(form.getByLabel('Value', { exact: true })).toHaveValue('0.95');
   await expect(form.getByLabel('Source', { exact: true })).toHaveValue('Recounted by the second person');
-  const study = async () => (await page.request.get(`/api/v1/studies/${id}`)).json();
-  expect((await study()).revision).toBe(revision);
+  expect(await revisionOf(page, id)).toBe(revision);
   await form.getByRole('button', { name: /^Save/ }).click();
   await expect(second.locator('tr[id="rate-first.growth.r"]')).toContainText('Recounted by the second person');
   await expect(second.locator('tr[id="rate-first.growth.K"]')).toContainText('444');
@@ -168,10 +167,10 @@ test('two people at one study: the second to save sees the difference, keeps the
   await second.getByRole('button', { name: 'Save the starts' }).click();
   await expect(second.getByText(/after you opened/).first()).toBeVisible();
   await expect(second.locator('#start-0-x')).toHaveValue('77');
-  expect((await study()).revision).toBe(revision);
+  expect(await revisionOf(page, id)).toBe(revision);
   await second.getByRole('button', { name: 'Save the starts' }).click();
   await expect(second.getByText(/after you opened/)).toHaveCount(0);
-  await expect.poll(async () => (await study()).revision).toBe(revision + 1);
+  await expect.poll(() => revisionOf(page, id)).toBe(revision + 1);
 });
 
 test('versions: what changed, and the way back', async ({ page }) => {
@@ -184,11 +183,7 @@ test('versions: what changed, and the way back', async ({ page }) => {
   await expect(differs).toContainText('400');
   await expect(differs).toContainText('123');
   await page.getByRole('button', { name: 'Make version 8 the newest again' }).click();
-  await expect
-    .poll(
-      async () => ((await (await page.request.get(`/api/v1/studies/${id}`)).json()) as { revision: number }).revision
-    )
-    .toBe(10);
+  await expect.poll(() => revisionOf(page, id)).toBe(10);
   await visit(page, `/studies/${id}/rates`);
   await expect(page.locator('tr[id="rate-first.growth.K"]')).toContainText('400');
 });

@@ -62,6 +62,12 @@ export async function saveRate(page: Page, id: string, revision: number, rate: R
   return ((await answer.json()) as { revision: number }).revision;
 }
 
+/** The number of a study's latest revision. */
+export async function revisionOf(page: Page, id: string): Promise<number> {
+  const study = (await (await page.request.get(`/api/v1/studies/${id}`)).json()) as { revision: { number: number } };
+  return study.revision.number;
+}
+
 /** A new study of the signed-in person: its question only, or whole with rates and one start. @returns its id */
 export async function createStudy(page: Page, title: string, extent: 'question' | 'whole' = 'question') {
   const where = await post(page, '/studies/new', { ...question, title });
