@@ -10,6 +10,7 @@ export type { AppliedPulse, Pulse } from './analysis/schedule';
 export { coordinatesFor, formFor, netAdditionOf, type Form } from './analysis/coordinates';
 export { findEquilibria, type EquilibriaOptions } from './analysis/equilibria';
 export * from './analysis/limitCycles';
+export { excludeCycles, type NoCycles } from './analysis/excludeCycles';
 export * from './analysis/separatrices';
 export * from './analysis/outcome';
 export { basinsOf, type Basin, type Basins } from './analysis/basins';

@@ -5,6 +5,7 @@ import { bracketedRoot } from '../solve/bracket';
 import { integrate } from '../solve/integrate';
 import type { EventSpec } from '../solve/problem';
 import { coordinatesFor, formFor, netAdditionOf, type Coordinates } from './coordinates';
+import { excludeCycles } from './excludeCycles';
 import type { EquilibriaReport, Equilibrium } from './results';
 
 export interface CyclePoint {
@@ -41,8 +42,16 @@ const GRID = 32;
 const ITERATES = 12;
 /** The search begins further in when a cycle is found to be smaller than `INNERMOST`, down to this. */
 const SMALLEST = 1e-6;
-const SCAN_RTOL = 1e-10;
-const FINE_RTOL = 1e-12;
+/** Tolerances of steps while looking for a cycle and on it, and how closely its place on the section is wanted. */
+interface Accuracy {
+  scan: number;
+  fine: number;
+  place: number;
+}
+const ACCURACY: Record<'full' | 'drawing', Accuracy> = {
+  full: { scan: 1e-10, fine: 1e-12, place: 1e-13 },
+  drawing: { scan: 1e-7, fine: 1e-8, place: 1e-8 }
+};
 /** A turn may take this many times what it takes close to the equilibrium. */
 const LONGEST_TURN = 400;
 const MOST_STEPS = 20_000;
@@ -56,6 +65,7 @@ interface Section {
   /** Where the path from s comes back, and when; null when it does not. */
   turn(s: number, rtol: number): { s: number; time: number } | null;
   sMax: number;
+  accuracy: Accuracy;
   coordinates: Coordinates;
   start(s: number): Float64Array;
 }
@@ -80,7 +90,12 @@ function resourceCeiling(system: System, xE: number): number {
   return high;
 }
 
-function sectionThrough(spec: ModelSpec, system: System, point: Equilibrium, shouldStop?: () => boolean): Section {
+function sectionThrough(
+  spec: ModelSpec,
+  system: System,
+  point: Equilibrium,
+  { shouldStop, accuracy = 'full' }: CycleOptions
+): Section {
   const c = coordinatesFor(system, [
     formFor(point.x, netAdditionOf(spec, 'first')),
     formFor(point.y, netAdditionOf(spec, 'second'))
@@ -103,6 +118,7 @@ function sectionThrough(spec: ModelSpec, system: System, point: Equilibrium, sho
   };
   return {
     coordinates: c,
+    accuracy: ACCURACY[accuracy],
     sMax: Math.log(resourceCeiling(system, point.x) / point.x),
     start,
     turn(s, rtol) {
@@ -123,8 +139,15 @@ function sectionThrough(spec: ModelSpec, system: System, point: Equilibrium, sho
 
 /** ln(return/start) at scanning accuracy; NaN where the path does not come back. */
 function gainAt(section: Section, s: number): number {
-  const back = section.turn(s, SCAN_RTOL);
+  const back = section.turn(s, section.accuracy.scan);
   return back === null || !(back.s > 0) ? NaN : Math.log(back.s / s);
+}
+
+/** A stretch of the section on whose ends the return map moves different ways, and where within it the cycle may well be. */
+interface Bracket {
+  low: number;
+  high: number;
+  guess: number | null;
 }
 
 /**
@@ -133,11 +156,11 @@ function gainAt(section: Section, s: number): number {
  * cycle; when the outermost falls to the equilibrium there is none.
  * @returns the brackets that prove it, or null when the iterates are too slow to tell.
  */
-function bracketsByIteration(section: Section, from: number): [number, number][] | null {
+function bracketsByIteration(section: Section, from: number): Bracket[] | null {
   let outer = section.sMax;
   let settled = false;
   for (let i = 0; i < ITERATES && !settled; i++) {
-    const next = section.turn(outer, SCAN_RTOL)?.s ?? NaN;
+    const next = section.turn(outer, section.accuracy.scan)?.s ?? NaN;
     if (!(next < outer)) return null;
     if (next < from) return [];
     settled = outer - next < 1e-6 * outer;
@@ -147,23 +170,26 @@ function bracketsByIteration(section: Section, from: number): [number, number][]
   // The limit lies below the last iterate by about as much again; the inner ones need only come this near.
   let inner = from;
   for (let i = 0; i < ITERATES; i++) {
-    const next = section.turn(inner, SCAN_RTOL)?.s ?? NaN;
+    const next = section.turn(inner, section.accuracy.scan)?.s ?? NaN;
     if (!(next > inner)) return null;
     inner = next;
-    if (inner > outer * (1 - 1e-3)) return [[Math.min(inner, outer * (1 - 1e-3)), outer * (1 + 1e-3)]];
+    if (inner > outer * (1 - 1e-3)) {
+      return [{ low: Math.min(inner, outer * (1 - 1e-3)), high: outer * (1 + 1e-3), guess: outer }];
+    }
   }
   return null;
 }
 
 /** Sign changes of the gain on a grid, and hidden pairs of them. */
-function bracketsOnGrid(section: Section, from: number, to: number): [number, number][] {
+function bracketsOnGrid(section: Section, from: number, to: number): Bracket[] {
   const gain = (s: number): number => gainAt(section, s);
   const s = Array.from({ length: GRID + 1 }, (_, i) => from * Math.pow(to / from, i / GRID));
   if ([0.6, 0.7, 0.8].every((part) => Math.abs(gain(s[Math.round(part * GRID)]!)) < CLOSED)) return [];
   const g = s.map(gain);
-  const brackets: [number, number][] = [];
+  const brackets: Bracket[] = [];
+  const note = (low: number, high: number) => brackets.push({ low, high, guess: null });
   for (let i = 1; i <= GRID; i++) {
-    if (g[i - 1]! * g[i]! < 0) brackets.push([s[i - 1]!, s[i]!]);
+    if (g[i - 1]! * g[i]! < 0) note(s[i - 1]!, s[i]!);
     if (i < 2) continue;
     const [left, middle, right] = [g[i - 2]!, g[i - 1]!, g[i]!];
     const sign = Math.sign(middle);
@@ -178,19 +204,46 @@ function bracketsOnGrid(section: Section, from: number, to: number): [number, nu
       const gb = gain(b);
       const through = sign * ga < 0 ? a : sign * gb < 0 ? b : null;
       if (through !== null) {
-        brackets.push([s[i - 2]!, through], [through, s[i]!]);
+        note(s[i - 2]!, through);
+        note(through, s[i]!);
         break;
       }
       if (sign * ga < sign * gb) high = b;
       else low = a;
     }
   }
-  return brackets.sort((p, q) => p[0] - q[0]);
+  return brackets.sort((p, q) => p.low - q.low);
+}
+
+/** The fixed point of the return map in a bracket: by secants from a guess where there is one, else within the bracket. */
+function place(section: Section, { low, high, guess }: Bracket): { s: number; time: number } | null {
+  const { fine, place: wanted } = section.accuracy;
+  if (guess !== null) {
+    let last = guess;
+    let turn = section.turn(last, fine);
+    let missed = turn ? turn.s - last : Number.NaN;
+    let s = turn?.s ?? Number.NaN;
+    for (let i = 0; i < 5 && s > low && s < high; i++) {
+      turn = section.turn(s, fine);
+      if (turn === null) break;
+      const miss = turn.s - s;
+      if (Math.abs(miss) <= wanted * Math.max(1, s)) return { s, time: turn.time };
+      const next = s - (miss * (s - last)) / (miss - missed);
+      [last, missed, s] = [s, miss, next];
+    }
+  }
+  const miss = (s: number): number => (section.turn(s, fine)?.s ?? Number.NaN) - s;
+  const [atLow, atHigh] = [miss(low), miss(high)];
+  if (!(atLow * atHigh <= 0)) return null;
+  const s = bracketedRoot(miss, low, high, atLow, atHigh, wanted);
+  const turn = section.turn(s, fine);
+  return turn !== null && Math.abs(turn.s - s) < 1e-6 * s ? { s, time: turn.time } : null;
 }
 
 /** Follows one turn with its integrals. The section's s must be a fixed point of the return map. */
 function measure(system: System, section: Section, around: number, s: number, period: number): LimitCycle {
   const c = section.coordinates;
+  const { fine } = section.accuracy;
   const slopes = new Float64Array(4);
   const plane = section.start(s);
   const x0 = c.x(plane);
@@ -213,12 +266,12 @@ function measure(system: System, section: Section, around: number, s: number, pe
     direction: 0,
     terminal: false
   }));
-  const { rtol, atol } = c.tolerances(FINE_RTOL, FINE_RTOL * Math.min(x0, y0));
+  const { rtol, atol } = c.tolerances(fine, fine * Math.min(x0, y0));
   const solution = integrate(
     { rhs, y0: [plane[0]!, plane[1]!, 0, 0, 0], span: [0, period], events },
     {
-      rtol: [...rtol, FINE_RTOL, FINE_RTOL, FINE_RTOL],
-      atol: [...atol, FINE_RTOL, FINE_RTOL * x0, FINE_RTOL * y0],
+      rtol: [...rtol, fine, fine, fine],
+      atol: [...atol, fine, fine * x0, fine * y0],
       method: 'dormand-prince'
     }
   );
@@ -245,42 +298,42 @@ function measure(system: System, section: Section, around: number, s: number, pe
   };
 }
 
+export interface CycleOptions {
+  /** `drawing` is good to a few digits, and some times faster; default `full`. */
+  accuracy?: keyof typeof ACCURACY;
+  shouldStop?: (() => boolean) | undefined;
+}
+
 /**
  * Limit cycles of a model around its equilibria.
  * @param spec a checked model. @param report its equilibria.
- * @returns cycles from the innermost outwards; none for competition, where both species lose by each other's increase and
- *   every bounded path settles, and none for the classical model, whose orbits are all closed.
+ * @returns cycles from the innermost outwards; none where excludeCycles proves that there are none, as for all of
+ *   competition, and none for the classical model, whose orbits are all closed.
  *   One strongly attracting cycle is proven to be the only one around its equilibrium; otherwise a grid of starts is
  *   refined by bracketing, and two cycles nearer to each other than the grid may both be missed.
  *   Where `shouldStop` said yes, only those found until then. Never throws.
  * @source strogatz2015 §8.7 (return map), kuznetsov2004 §1.5 (multiplier by Liouville's formula), hofbauerSigmund1998 §3.4
  */
-export function limitCycles(
-  spec: ModelSpec,
-  report: EquilibriaReport,
-  options: { shouldStop?: () => boolean } = {}
-): LimitCycle[] {
-  if (spec.interaction === 'competition') return [];
+export function limitCycles(spec: ModelSpec, report: EquilibriaReport, options: CycleOptions = {}): LimitCycle[] {
+  const rotating = report.equilibria.some(
+    (point) => point.feasible && point.x > 0 && point.y > 0 && point.determinant > 0
+  );
+  if (!rotating || excludeCycles(spec) !== null) return [];
   const system = compile(spec);
   const found: LimitCycle[] = [];
   report.equilibria.forEach((point, index) => {
     if (!point.feasible || !(point.x > 0) || !(point.y > 0)) return;
     // A closed orbit goes round points whose indices sum to 1, hence round at least one that is no saddle.
     if (!(point.determinant > 0) || point.class === 'centre') return;
-    const section = sectionThrough(spec, system, point, options.shouldStop);
+    const section = sectionThrough(spec, system, point, options);
     if (!(section.sMax > INNERMOST)) return;
     let from = INNERMOST;
     while (from > SMALLEST && point.trace * gainAt(section, from) < 0) from /= 10;
     const brackets = bracketsByIteration(section, from) ?? bracketsOnGrid(section, from, section.sMax);
-    for (const [low, high] of brackets) {
-      const miss = (s: number): number => (section.turn(s, FINE_RTOL)?.s ?? NaN) - s;
-      const atLow = miss(low);
-      const atHigh = miss(high);
-      if (!(atLow * atHigh <= 0)) continue;
-      const s = bracketedRoot(miss, low, high, atLow, atHigh, 1e-13);
-      const turn = section.turn(s, FINE_RTOL);
-      if (turn === null || !(Math.abs(turn.s - s) < 1e-6 * s)) continue;
-      const cycle = measure(system, section, index, s, turn.time);
+    for (const bracket of brackets) {
+      const fixed = place(section, bracket);
+      if (fixed === null) continue;
+      const cycle = measure(system, section, index, fixed.s, fixed.time);
       const known = found.some(
         (other) =>
           Math.abs(other.period / cycle.period - 1) < 1e-6 &&

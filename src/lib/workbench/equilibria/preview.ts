@@ -37,7 +37,7 @@ export function preview({ question, content, window }: PreviewQuestion): Preview
     return { ok: false, reason: issues[0]?.message ?? `${missing[0]?.name ?? 'A rate'} is not entered yet.` };
   }
   const report = findEquilibria(model);
-  const cycles = limitCycles(model, report);
+  const cycles = limitCycles(model, report, { accuracy: 'drawing' });
   const paths = content.starts.map(({ label, x, y }) => {
     const path = simulate(model, {
       start: { x, y },
