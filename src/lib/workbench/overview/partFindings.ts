@@ -51,7 +51,7 @@ function ratesFinding({ question, content, spreads }: FindingsInput): PartFindin
   const kinds = [...new Set(content.rates.map((rate) => rate.source.kind))];
   return {
     says: weakest?.cv
-      ? `All ${countWord(needs.length)} rates entered; the weakest is ± ${formatPercent(weakest.cv, 2).replace(/\s*%$/, ' per cent')}.`
+      ? `All ${countWord(needs.length)} rates entered; the weakest is ±\u00a0${formatPercent(weakest.cv, 2).replace(/\s*%$/, '\u00a0per cent')}.`
       : `All ${countWord(needs.length)} rates entered, as exact.`,
     basis: [sentenceCase(listWords(kinds)), need && weakest?.cv ? `weakest: ${need.symbol.plain}` : '']
       .filter(Boolean)
