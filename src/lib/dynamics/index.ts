@@ -7,6 +7,7 @@ export { checkModel } from './model/check';
 export { integrate } from './solve/integrate';
 export * from './analysis/trajectory';
 export type { AppliedPulse, Pulse } from './analysis/schedule';
+export * from './analysis/seasonal';
 export { coordinatesFor, formFor, netAdditionOf, type Form } from './analysis/coordinates';
 export { findEquilibria, type EquilibriaOptions } from './analysis/equilibria';
 export * from './analysis/limitCycles';

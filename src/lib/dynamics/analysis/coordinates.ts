@@ -46,6 +46,24 @@ export function formFor(n: number, net: number): Form {
  * @returns functions that allocate nothing. Never throws.
  */
 export function coordinatesFor(system: System, forms: Forms): Coordinates {
+  const fixed = coordinatesAt(system, forms);
+  const { moveTo } = system;
+  // Rates that stand still are not asked for the time: this is the innermost loop.
+  if (!moveTo) return fixed;
+  return {
+    ...fixed,
+    rhs(t, z, out) {
+      moveTo(t);
+      fixed.rhs(t, z, out);
+    },
+    jacobian(t, z, out) {
+      moveTo(t);
+      fixed.jacobian(t, z, out);
+    }
+  };
+}
+
+function coordinatesAt(system: System, forms: Forms): Coordinates {
   const n1 = netAdditionOf(system.spec, 'first');
   const n2 = netAdditionOf(system.spec, 'second');
   const [f1, f2] = forms;

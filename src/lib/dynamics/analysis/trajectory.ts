@@ -7,6 +7,7 @@ import type { Outcome } from '../solve/problem';
 import { ENGINE_VERSION } from '../version';
 import type { Coordinates } from './coordinates';
 import { followPath, levelOf, type Watched } from './path';
+import { seasonalSystem, type Season } from './seasonal';
 import { simulateSchedule, type AppliedPulse, type Pulse } from './schedule';
 
 export interface Threshold {
@@ -33,6 +34,8 @@ export interface TrajectoryOptions {
   thresholds?: readonly Threshold[];
   /** Animals added or taken at set times inside the span; an output time at one shows the state after it. */
   schedule?: readonly Pulse[];
+  /** Seasonal course of a growth rate or a capacity; both rest at their mean without one. */
+  season?: Season;
   maxSteps?: number;
   shouldStop?: () => boolean;
 }
@@ -109,6 +112,7 @@ function thresholdsIn(c: Coordinates, thresholds: readonly Threshold[]): Watched
 function crossingsAtStart(system: System, options: TrajectoryOptions): TrajectoryEvent[] {
   const { start, span } = options;
   const slope = new Float64Array(2);
+  system.moveTo?.(span[0]);
   system.rhs(start.x, start.y, slope);
   const forwards = span[1] >= span[0] ? 1 : -1;
   return (options.thresholds ?? []).flatMap(({ species, below, above }): TrajectoryEvent[] => {
@@ -186,9 +190,9 @@ export function simulate(spec: ModelSpec, options: TrajectoryOptions): Trajector
     const { schedule, ...plain } = options;
     return simulateSchedule(spec, plain, Array.from(times), schedule, simulate);
   }
-  const fast = simulateFast(spec, options, times);
+  const fast = options.season ? null : simulateFast(spec, options, times);
   if (fast !== null) return fast;
-  const system = compile(spec);
+  const system = options.season ? seasonalSystem(spec, options.season) : compile(spec);
   const t: number[] = [];
   const x: number[] = [];
   const y: number[] = [];

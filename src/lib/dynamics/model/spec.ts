@@ -120,4 +120,6 @@ export interface System {
   /** Whether the axis x = 0 (y = 0) maps into itself: no stocking and no quota on that species. */
   readonly firstAxisInvariant: boolean;
   readonly secondAxisInvariant: boolean;
+  /** Sets the time at which the other functions are read; only where rates change with the season. */
+  moveTo?(t: number): void;
 }
