@@ -121,7 +121,13 @@ test('somebody who has no study is told what to do, and may not make one where t
   await page.getByRole('button', { name: 'Accept and sign in' }).click();
   await expect(page).toHaveURL(/\/studies/);
 
+  // A link that was sent to the wrong person can be taken back before it is used.
+  const wrong = `wrong-${email}`;
   await visit(author, `/studies/${id}/sharing`);
+  await author.getByLabel('E-mail address').fill(wrong);
+  await author.getByRole('button', { name: 'Send the invitation' }).click();
+  await author.getByRole('button', { name: `Withdraw the invitation of ${wrong}` }).click();
+  await expect(author.getByRole('row', { name: wrong })).toHaveCount(0);
   await author.getByRole('button', { name: /Take the study back/ }).click();
   await expect(author.getByText('A guest')).toHaveCount(0);
   await visit(page, '/studies');

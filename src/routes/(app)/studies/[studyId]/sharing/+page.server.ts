@@ -5,6 +5,7 @@ import { revokeShare } from '$lib/server/commands/revokeShare';
 import { shareStudy } from '$lib/server/commands/shareStudy';
 import { asAction, asFormAction, emptyForm } from '$lib/server/kit/asAction';
 import { asLoad } from '$lib/server/kit/asLoad';
+import { withdrawStudyInvitation } from '$lib/server/commands/withdrawStudyInvitation';
 import { studySharing } from '$lib/server/queries/studySharing';
 import type { RequestEvent } from '@sveltejs/kit';
 import type { Actions, PageServerLoad } from './$types';
@@ -48,5 +49,9 @@ export const actions: Actions = {
   revoke: asAction(async (event: RequestEvent<{ studyId: string }>, context) => {
     const data = await event.request.formData();
     await revokeShare(context, { studyId: event.params.studyId, userId: String(data.get('userId') ?? '') });
+  }),
+  withdraw: asAction(async (event: RequestEvent<{ studyId: string }>, context) => {
+    const invitationId = String((await event.request.formData()).get('invitationId') ?? '');
+    await withdrawStudyInvitation(context, { studyId: event.params.studyId, invitationId });
   })
 };
