@@ -3,8 +3,10 @@
  * species, which year), not by how much was drawn before it: work can be cut up in any way and still gives the same bytes.
  */
 
-/** Work space of a stream: four words of state. */
+/** Chance in the shapes that simulations ask for. */
 export interface RandomStream {
+  /** Four words that move on with every draw; a kernel may draw from them itself. */
+  readonly state: Int32Array;
   /** The next 32 bits, 0 to 2^32 - 1. */
   bits(): number;
   /** Uniform on [0, 1) with 53 bits. */
@@ -255,6 +257,7 @@ function streamOf(name: Int32Array): RandomStream {
   };
 
   return {
+    state,
     bits,
     uniform,
     normal,
