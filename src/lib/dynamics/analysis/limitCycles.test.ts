@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import type { ConsumerResourceModel } from '../model/spec';
+import { findEquilibria } from './equilibria';
 import { limitCycles, shareBelow } from './limitCycles';
 import { reportAt } from './reportAt.fixture';
 import { simulate } from './trajectory';
@@ -139,5 +140,72 @@ describe('limitCycles', () => {
     const shouldStop = () => (asked += 1) > 0;
     expect(limitCycles(spec, interior(spec), { shouldStop })).toEqual([]);
     expect(asked).toBeGreaterThan(0);
+  });
+});
+
+describe('cycles that must be there', () => {
+  it('are found however violent they are', () => {
+    // The resource dips to 4e-98 and comes back within rounding of its ceiling, 244 times its resting level.
+    const spec: ConsumerResourceModel = {
+      interaction: 'consumer-resource',
+      first: { growth: { kind: 'logistic', r: 1, K: 1 } },
+      second: { mortality: 0.05242320571252573 },
+      feeding: { response: 'holling-2', a: 13.44019083885116, h: 0.31301564577479213, e: 0.9683244067477063 }
+    };
+    const cycles = limitCycles(spec, findEquilibria(spec));
+    expect(cycles).toHaveLength(1);
+    // Time between two outbreaks of a long path.
+    const level = cycles[0]!.points[0]!.y;
+    const path = simulate(spec, {
+      start: { x: 0.9, y: level },
+      span: [0, 3000],
+      samples: 2,
+      rtol: 1e-9,
+      thresholds: [{ species: 'second', above: level }]
+    });
+    const rises = path.events.map(({ t }) => t);
+    expect(rises.at(-1)! - rises.at(-2)!).toBeCloseTo(cycles[0]!.period, 4);
+  });
+
+  it('are found wherever bounded paths have no point to settle at, and take turns in attracting and repelling', () => {
+    let seed = 9;
+    const draw = (low: number, high: number): number => {
+      seed = (seed * 1664525 + 1013904223) >>> 0;
+      return low + (high - low) * (seed / 2 ** 32);
+    };
+    let forced = 0;
+    for (let i = 0; forced < 40 && i < 4000; i++) {
+      const spec: ConsumerResourceModel = {
+        interaction: 'consumer-resource',
+        first: { growth: { kind: 'logistic', r: 1, K: 1 } },
+        second:
+          i % 2 === 0
+            ? { mortality: 10 ** draw(-1.5, 0) }
+            : { growth: { kind: 'leslie', r: 10 ** draw(-1.5, 0), g: 10 ** draw(-1, 1) } },
+        feeding: {
+          response: i % 3 === 0 ? 'holling-3' : 'holling-2',
+          a: 10 ** draw(0, 1.5),
+          h: 10 ** draw(-1.5, 0.3),
+          e: draw(0.1, 1)
+        }
+      };
+      const report = findEquilibria(spec);
+      const inside = report.equilibria.filter(({ x, y }) => x > 0 && y > 0);
+      if (inside.length !== 1 || report.equilibria.some(({ stability }) => stability !== 'unstable')) continue;
+      forced += 1;
+      const cycles = limitCycles(spec, report, { accuracy: 'drawing' });
+      const expected = cycles.map((_, k) => (k % 2 === 0 ? 'stable' : 'unstable'));
+      expect(cycles.length % 2, JSON.stringify(spec)).toBe(1);
+      expect(cycles.map(({ stability }) => stability)).toEqual(expected);
+    }
+    expect(forced).toBe(40);
+  });
+
+  it('needs no more than a drawing shows while a slider moves', () => {
+    const spec = rosenzweig(1, 90, 0.1, 0.5, 0.5, 0.5);
+    const [full] = limitCycles(spec, interior(spec));
+    const [drawn] = limitCycles(spec, interior(spec), { accuracy: 'drawing' });
+    expect(drawn!.period / full!.period).toBeCloseTo(1, 6);
+    expect(drawn!.xMin / full!.xMin).toBeCloseTo(1, 5);
   });
 });
