@@ -29,6 +29,7 @@ export {
   type ThresholdReport
 } from './analysis/thresholds';
 export type { BranchOptions } from './analysis/branches';
+export * from './analysis/outcomeMap';
 export * from './analysis/pathThreshold';
 export * from './analysis/vectorField';
 export { parametersOf, symbolOf, withParameter, type ModelParameter } from './model/parameters';

@@ -123,6 +123,16 @@ function oneWay(
   for (const next of walk(face.curve, start.z, start.tangent, { longest })) {
     if (stop()) return { points, end: 'lost' };
     let cut: { share: number; z: Float64Array; end: BranchEnd } | null = null;
+    const beyond = turnOutside(family, face, here, next);
+    if (beyond) {
+      // The branch leaves the range and comes back within one step: it ends where it leaves.
+      const out = limits.find(({ test }) => test(beyond.z) < 0);
+      const place = out && out.test(here.z) > 0 ? locate(face.curve, here, beyond, out.test) : null;
+      if (!place) return { points, end: 'range' };
+      snap(family, face, place.z, 'range');
+      points.push({ z: place.z, tangent: here.tangent });
+      return { points, end: 'range' };
+    }
     for (const { end, test } of limits) {
       if (test(next.z) >= 0) continue;
       // The start may lie on the limit itself: then the walk leads out at once.
@@ -142,6 +152,17 @@ function oneWay(
     here = next;
   }
   return { points, end: 'lost' };
+}
+
+/** The turning point between two points inside the range when it lies outside; null otherwise. */
+function turnOutside(family: Family, face: Face, a: CurvePoint, b: CurvePoint): CurvePoint | null {
+  const last = a.z.length - 1;
+  if (!(a.tangent[last]! * b.tangent[last]! < 0)) return null;
+  const inside = (q: number): boolean => q >= family.q0 && q <= family.q1;
+  if (!inside(face.q(b.z))) return null;
+  const place = locate(face.curve, a, b, (z) => face.fold(z).value);
+  if (place === null || inside(face.q(place.z))) return null;
+  return { z: place.z, tangent: a.tangent };
 }
 
 /** Puts a point located on a limit exactly there. */
@@ -181,19 +202,22 @@ function passes(face: Face, a: CurvePoint, b: CurvePoint, z: Float64Array): bool
   return off <= 0.25 * Math.sqrt(chord);
 }
 
-/** Marks the seeds that a stretch of a branch passes exactly. */
+/** Marks the seeds that a stretch of a branch passes. */
 function claim(face: Face, a: CurvePoint, b: CurvePoint, seeds: readonly Seed[], branch: number): void {
   const [qa, qb] = [face.q(a.z), face.q(b.z)];
   const [low, high] = [Math.min(qa, qb), Math.max(qa, qb)];
-  for (const seed of seeds) {
-    if (seed.face !== face.key || seed.branch !== null) continue;
-    const wanted = face.unknowns(seed.x, seed.y, seed.q);
-    // Near a fold both halves lie close by: only the curve itself, solved at this very value, tells which one is meant.
-    for (const end of [a, b]) if (face.q(end.z) === seed.q && apart(face, end.z, wanted) < SAME) seed.branch = branch;
-    if (seed.branch !== null || seed.q < low || seed.q > high) continue;
-    if (qa === qb) continue;
-    const found = locate(face.curve, a, b, (z) => face.q(z) - seed.q);
-    if (found && apart(face, found.z, wanted) < SAME) seed.branch = branch;
+  const near = seeds.filter(({ face: key, q }) => key === face.key && q >= low && q <= high);
+  for (const q of new Set(near.map((seed) => seed.q))) {
+    // Near a fold both halves lie close by: the curve itself, solved at this very value, tells which one is meant.
+    const z = qa === q ? a.z : qb === q ? b.z : locate(face.curve, a, b, (at) => face.q(at) - q)?.z;
+    if (!z) continue;
+    const here = near
+      .filter((seed) => seed.q === q)
+      .map((seed) => ({ seed, off: apart(face, z, face.unknowns(seed.x, seed.y, q)) }))
+      .sort((p, r) => p.off - r.off);
+    const [first, second] = here;
+    // All equilibria at this value are known, so the nearest is the one, unless another is nearly as near.
+    if (first && (first.off < SAME || first.off < 0.01 * Math.min(0.1, second?.off ?? 1))) first.seed.branch ??= branch;
   }
 }
 
