@@ -35,7 +35,7 @@ interface Refused {
   status: number;
   code: string;
   detail: string;
-  issues?: { path: string; message: string }[];
+  errors?: { pointer: string; path: string; detail: string; line?: number; column?: number }[];
 }
 
 /** Asks and expects a problem document of that status. */
@@ -46,7 +46,7 @@ async function refused(address: string, asked: Parameters<typeof request>[1], st
   expect(Problem.safeParse(answer.json).error).toBeUndefined();
   return answer.json;
 }
-const paths = ({ issues }: Refused) => (issues ?? []).map(({ path: at }) => at);
+const paths = ({ errors }: Refused) => (errors ?? []).map(({ path: at }) => at);
 
 describe('who may compute', () => {
   for (const [address, body] of [
@@ -150,7 +150,7 @@ describe('POST /api/v1/equilibria', () => {
   it('refuses ten megabytes without reading them all', async () => {
     const body = `{"model": "${'x'.repeat(10 * 1024 * 1024)}"}`;
     const problem = await refused('/api/v1/equilibria', { body }, 422);
-    expect(problem).toMatchObject({ code: 'input.tooLarge', issues: [{ path: '' }] });
+    expect(problem).toMatchObject({ code: 'input.tooLarge', errors: [{ pointer: '', path: '' }] });
   });
 
   it('refuses rates too far apart in size to write an answer with', async () => {
@@ -228,7 +228,7 @@ describe('POST /api/v1/trajectories', () => {
       competition: { form: 'encounters', b12: 0, b21: 0 }
     };
     const problem = await refused('/api/v1/trajectories', { body: { ...path, model, span: [0, 1000] } }, 422);
-    expect(problem).toMatchObject({ code: 'engine.failed', issues: [{ path: 'span.1' }] });
+    expect(problem).toMatchObject({ code: 'engine.failed', errors: [{ pointer: '/span/1', path: 'span.1' }] });
     expect(problem.detail).toMatch(/stopped at time 13\d/);
   });
 

@@ -57,7 +57,7 @@ async function expectRefused(
   });
   expect([method, address, answer.status]).toEqual([method, address, status]);
   expect(Problem.safeParse(answer.json).error).toBeUndefined();
-  return answer.json as { code: string; issues?: { path: string }[] };
+  return answer.json as { code: string; errors?: { path: string }[] };
 }
 
 describe('refusals, after which every row is as it was', () => {
@@ -97,7 +97,7 @@ describe('refusals, after which every row is as it was', () => {
     const before = await rows();
     const rates = `/api/v1/studies/${studyId}/rates`;
     const bad = async (rate: object) =>
-      (await expectRefused('PATCH', rates, { revision, rate }, tokens.owner, 422)).issues?.map(({ path }) => path);
+      (await expectRefused('PATCH', rates, { revision, rate }, tokens.owner, 422)).errors?.map(({ path }) => path);
     expect(await bad(typedRate('first.growth.K', -4, '{ind}/har'))).toEqual(['rate.value']);
     expect(await bad(typedRate('first.growth.K', 4, 'kg/har'))).toEqual(['rate.unit']);
     expect(await bad(typedRate('feeding.a', 4, 'har/{ind}/a'))).toEqual(['rate.path']);
@@ -167,7 +167,7 @@ describe('the studies of a reader', () => {
       tokens.owner,
       422
     );
-    expect(problem.issues?.map(({ path }) => path)).toEqual(expect.arrayContaining(['rates.first.growth.K', 'starts']));
+    expect(problem.errors?.map(({ path }) => path)).toEqual(expect.arrayContaining(['rates.first.growth.K', 'starts']));
   });
 });
 
@@ -181,7 +181,10 @@ describe('changes through the API', () => {
     expect(SavedAnswer.safeParse(saved.json).error).toBeUndefined();
     expect(saved.json.revision).toBe(own.revision + 1);
     const stale = await expectRefused('PATCH', address, body, tokens.owner, 409);
-    expect(stale).toMatchObject({ code: 'study.stale', issues: [{ path: 'rates.first.growth.r' }] });
+    expect(stale).toMatchObject({
+      code: 'study.stale',
+      errors: [{ pointer: '/rates/first/growth/r', path: 'rates.first.growth.r' }]
+    });
     await archiveStudy(team.owner.context, own);
     const closed = { ...body, revision: saved.json.revision };
     expect((await expectRefused('PATCH', address, closed, tokens.owner, 409)).code).toBe('study.archived');

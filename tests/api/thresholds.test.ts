@@ -25,7 +25,7 @@ beforeAll(async () => {
 interface Refused {
   code: string;
   detail: string;
-  issues?: { path: string }[];
+  errors?: { path: string }[];
 }
 
 async function refused(body: unknown): Promise<Refused> {
@@ -64,9 +64,9 @@ describe('POST /api/v1/thresholds', () => {
     ['an unknown field', { steps: 10 }, 'steps']
   ];
   it.each(bad)('refuses %s by its path', async (_name, change, at) => {
-    const { code, issues } = await refused({ ...question, ...change });
+    const { code, errors } = await refused({ ...question, ...change });
     expect(code).toBe('input.invalid');
-    expect((issues ?? []).map(({ path }) => path)).toContain(at);
+    expect((errors ?? []).map(({ path }) => path)).toContain(at);
   });
 
   it('names the parameters there are', async () => {

@@ -141,7 +141,7 @@ test('a rate', async ({ page }) => {
     await expect(form.getByLabel('Kind of source')).toHaveValue('own survey');
   }
   await expectKept(form, { Value: '400', 'Standard error': '10', Source: long.slice(0, 5000) }, /^Save/, [
-    /under \d+ characters/
+    /Keep this to \d+ characters/
   ]);
   await form.getByLabel('How sure').selectOption('range');
   await expectKept(form, { Value: '400', 'Lower end': '500', 'Upper end': '300', Source: 'Counts' }, /^Save/, [

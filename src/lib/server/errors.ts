@@ -4,6 +4,11 @@
 export interface FieldIssue {
   path: string;
   message: string;
+  /** The steps of the path, where a name of the sender's may hold a dot. */
+  steps?: readonly string[];
+  /** In a text that could not be read at all: where, from 1. */
+  line?: number;
+  column?: number;
 }
 
 /** The one list. A code is stable; its sentence may be sharpened where it is thrown. */
@@ -11,6 +16,7 @@ export const CATALOGUE = {
   'input.invalid': [422, 'Some of what was sent cannot be used.'],
   'input.tooLarge': [422, 'What was sent is larger than this accepts.'],
   'input.notJson': [422, 'The body is not JSON.'],
+  'input.notForm': [422, 'What was sent is not a form that can be read.'],
   'auth.required': [401, 'Sign in first.'],
   'auth.invalidToken': [401, 'This token is unknown, withdrawn or past its date.'],
   'auth.wrongCredentials': [422, 'The e-mail address and the password do not match an account.'],

@@ -61,8 +61,8 @@ const REFUSALS: Record<number, string> = {
   401: 'Neither a session nor a good token.',
   403: 'Readable, but not allowed; or a token that may only read; or a request from another site.',
   404: 'There is none, or it is not yours to see.',
-  409: 'Archived, or somebody saved in between: `issues` lists what they changed.',
-  422: 'Something in it cannot be used, each field named in `issues` by its dotted path; or a number that cannot be reached to the accuracy asked for (`engine.failed`, `engine.tooLong`). Also a body that is not JSON (`NaN`, `Infinity`) or is larger than 1 MB.',
+  409: 'Archived, or somebody saved in between: `errors` lists what they changed.',
+  422: 'Something in it cannot be used, each field named in `errors` by its JSON pointer; or a number that cannot be reached to the accuracy asked for (`engine.failed`, `engine.tooLong`). Also a body that is not JSON (`NaN`, `Infinity`) or is larger than 1 MB.',
   429: 'Too many requests; Retry-After says how long to wait.',
   503: 'The records cannot be reached at the moment; try again.'
 };

@@ -61,7 +61,7 @@ describe('a problem document', () => {
       status: 422,
       code: 'input.invalid',
       requestId: 'request-1',
-      issues: [{ path: 'a' }]
+      errors: [{ pointer: '/a', path: 'a', detail: 'b' }]
     });
   });
 

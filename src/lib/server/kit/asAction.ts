@@ -1,10 +1,10 @@
-import { fail, redirect, type ActionFailure, type RequestEvent } from '@sveltejs/kit';
+import { error, fail, redirect, type ActionFailure, type RequestEvent } from '@sveltejs/kit';
 import { message, setError, superValidate, type SuperValidated } from 'sveltekit-superforms';
 import { zod4, type ZodValidationSchema } from 'sveltekit-superforms/adapters';
 import type { z } from 'zod';
 import type { Context } from '../context';
 import { asRefusal } from '../db/connection';
-import { AppError, type FieldIssue } from '../errors';
+import { AppError, refusal, type FieldIssue } from '../errors';
 import { contextOf } from './contextOf';
 import { signInPath } from './requireUser';
 
@@ -16,9 +16,14 @@ export interface ActionProblem {
   issues: FieldIssue[];
 }
 
+/** Whether a posted form broke off, or is none in spite of what its header says. No browser sends such a thing. */
+function isUnreadable(thrown: unknown): boolean {
+  return thrown instanceof TypeError && /FormData|multipart/i.test(thrown.message);
+}
+
 /** The refusal behind what was thrown; rethrows faults, redirects and failures. A missing sign-in redirects. */
 function refusedOr(event: RequestEvent, thrown: unknown): AppError {
-  const refused = asRefusal(thrown);
+  const refused = isUnreadable(thrown) ? refusal('input.notForm', { cause: thrown }) : asRefusal(thrown);
   if (!(refused instanceof AppError)) throw thrown;
   if (refused.status === 401) redirect(303, signInPath(event));
   if (refused.code === 'database.unavailable') event.locals.databaseAway = true;
@@ -66,11 +71,11 @@ export function asFormAction<E extends RequestEvent, S extends FormSchema, T>(
   options: { secrets?: (keyof z.output<S> & string)[]; id?: string } = {}
 ) {
   return async (event: E) => {
-    const parsed = await superValidate(
-      await event.request.formData(),
-      zod4(schema),
-      options.id ? { id: options.id } : {}
-    );
+    const posted = await event.request.formData().catch((thrown: unknown) => {
+      const { status, message } = refusedOr(event, thrown);
+      error(status, message);
+    });
+    const parsed = await superValidate(posted, zod4(schema), options.id ? { id: options.id } : {});
     const form = parsed as SuperValidated<z.output<S>, App.Superforms.Message, z.input<S>>;
     const typed = { ...form.data };
     const blank = () => {

@@ -103,7 +103,7 @@ describe('a body', () => {
   ])('that cannot be used is a 422 with its path: %s', async (body, path, code) => {
     const response = await send(body);
     expect(response.status).toBe(422);
-    expect(await response.json()).toMatchObject({ code, issues: [{ path }] });
+    expect(await response.json()).toMatchObject({ code, errors: [{ path }] });
   });
 
   it('that can be used is answered', async () => {

@@ -1,5 +1,6 @@
 import type { RequestEvent } from '@sveltejs/kit';
 import type { z } from 'zod';
+import { jsonFault } from '../api/jsonFault';
 import { parseValue } from '../api/problem';
 import { refusal } from '../errors';
 
@@ -42,8 +43,10 @@ export async function readJson<S extends z.ZodType>(
   try {
     value = JSON.parse(text);
   } catch {
-    const message = 'The body is not JSON (note that NaN and Infinity are not numbers in JSON).';
-    throw refusal('input.notJson', { message, issues: [{ path: '', message }] });
+    const fault = jsonFault(text);
+    const where = fault ? ` from line ${fault.line}, column ${fault.column} on` : '';
+    const message = `The body is not JSON${where} (note that NaN and Infinity are not numbers in JSON).`;
+    throw refusal('input.notJson', { message, issues: [{ path: '', message, ...fault }] });
   }
   return parseValue(schema, value);
 }

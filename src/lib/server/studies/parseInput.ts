@@ -10,7 +10,12 @@ export function parseInput<S extends z.ZodType>(schema: S, value: unknown, prefi
   const parsed = schema.safeParse(value);
   const complaints = parsed.success ? unstorable(parsed.data) : issuesOf(parsed.error);
   if (parsed.success && complaints.length === 0) return parsed.data;
-  const issues = complaints.map(({ path, message }) => ({ path: [prefix, path].filter(Boolean).join('.'), message }));
+  const before = prefix === '' ? [] : prefix.split('.');
+  const issues = complaints.map(({ path, message, steps }) => ({
+    path: [prefix, path].filter(Boolean).join('.'),
+    message,
+    ...(steps && { steps: [...before, ...steps] })
+  }));
   throw refusal('input.invalid', { message: issues[0]?.message, issues });
 }
 
