@@ -112,7 +112,10 @@ export const Start = z.strictObject({
 export type Start = z.infer<typeof Start>;
 
 export const RunSettings = z.strictObject({
-  span: finite.positive({ error: 'The run must last longer than 0.' }).max(1e6, { error: 'The run is too long.' }),
+  span: finite
+    .positive({ error: 'The run must last longer than 0.' })
+    .min(1e-6, { error: 'The run is too short.' })
+    .max(1e6, { error: 'The run is too long.' }),
   samples: z.number().int().min(2).max(20_001),
   rtol: finite.min(1e-12, { error: 'At least 1e-12.' }).max(1e-2, { error: 'At most 0.01.' }),
   atol: finite.min(0).max(1),

@@ -32,6 +32,16 @@ export const TrajectoryRequest = z
       ctx.addIssue({ code: 'custom', path: ['times'], message: 'Give either `samples` or `times`, not both.' });
     if (r.samples === undefined && r.times === undefined)
       ctx.addIssue({ code: 'custom', path: ['samples'], message: 'Give `samples` or `times`.' });
+    const [from, to] = r.span;
+    const length = to - from;
+    if (!Number.isFinite(length))
+      ctx.addIssue({ code: 'custom', path: ['span', 1], message: 'The span is longer than a number can say.' });
+    // Neighbouring times must differ, or the same one would be asked for twice.
+    else if (r.samples !== undefined && length > 0) {
+      const finest = Math.max(Math.max(Math.abs(from), Math.abs(to)) * 4 * Number.EPSILON, Number.MIN_VALUE * 2 ** 52);
+      if (length / (r.samples - 1) < finest)
+        ctx.addIssue({ code: 'custom', path: ['samples'], message: 'So many times do not fit into so short a span.' });
+    }
     r.times?.forEach((t, i) => {
       if (t < r.span[0] || t > r.span[1] || (i > 0 && t <= (r.times as number[])[i - 1]!))
         ctx.addIssue({ code: 'custom', path: ['times', i], message: 'Times must rise and lie inside the span.' });
