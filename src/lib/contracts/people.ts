@@ -28,7 +28,13 @@ export const NewPassword = z
   .min(PASSWORD_MIN, `Use at least ${PASSWORD_MIN} characters; a few words together are fine.`)
   .max(PASSWORD_MAX, `Use at most ${PASSWORD_MAX} characters.`);
 
-export const PersonName = z.string().trim().min(1, 'Type a name.').max(120, 'Use at most 120 characters.');
+/** Text that a record can hold: no zero character, and no half of a pair. */
+const Line = z
+  .string()
+  .trim()
+  .refine((text) => text.isWellFormed() && !text.includes('\0'), 'There is a character in this that cannot be kept.');
+
+export const PersonName = Line.min(1, 'Type a name.').max(120, 'Use at most 120 characters.');
 
 export const SignIn = z.strictObject({
   email: Email,
@@ -60,7 +66,7 @@ export const AcceptInvitation = z.strictObject({ name: PersonName, password: New
 export const TOKEN_DAYS_MAX = 365;
 
 export const MintToken = z.strictObject({
-  name: z.string().trim().min(1, 'Say what the token is for.').max(80, 'Use at most 80 characters.'),
+  name: Line.min(1, 'Say what the token is for.').max(80, 'Use at most 80 characters.'),
   scope: z.enum(TOKEN_SCOPES, { error: 'Choose what the token may do.' }).default('read'),
   // Text, so that the form shows again what was typed; whoever reads it takes its number.
   days: z

@@ -31,7 +31,8 @@ export async function recordAudit(context: Context, transaction: Transaction, ac
       workspaceId: act.workspaceId ?? null,
       details: act.details ?? {},
       requestId: context.requestId,
-      ip: context.ip
+      // Behind a proxy the address is a header, which may be of any length.
+      ip: context.ip.slice(0, 64)
     },
     { transaction }
   );
