@@ -43,7 +43,7 @@ export const actions: Actions = {
     await changeShare(context, {
       studyId: event.params.studyId,
       userId: String(data.get('userId') ?? ''),
-      role: z.enum(studyRoles).parse(data.get('role'))
+      role: String(data.get('role') ?? '')
     });
   }),
   revoke: asAction(async (event: RequestEvent<{ studyId: string }>, context) => {
