@@ -1,9 +1,36 @@
-import { partStates } from '$lib/study';
-import { crayfish, crayfishContent } from '$lib/study/testStudies';
+import type { RateEntry } from '$lib/contracts/content';
+import type { StudyQuestion } from '$lib/contracts/study';
+import { emptyContent, partStates, ratesNeeded } from '$lib/study';
 import { expect, it } from 'vitest';
 import { partFindings } from './partFindings';
 
-const content = crayfishContent();
+const crayfish: StudyQuestion = {
+  title: 'Crayfish of North Arm',
+  place: 'North Arm',
+  area: { value: 12.5, unit: 'har' },
+  interaction: 'competition',
+  first: { common: 'stream crayfish', scientific: '', counted: 'adults', unit: '{ind}/har' },
+  second: { common: 'saddleback crayfish', scientific: '', counted: 'adults', unit: '{ind}/har' },
+  protects: 'first',
+  timeUnit: 'a',
+  horizon: 20,
+  objective: 'How hard to trap.',
+  acceptableRisk: 10
+};
+const blank = emptyContent(crayfish);
+const content = {
+  ...blank,
+  rates: ratesNeeded(blank.structure, crayfish).map(({ path }): RateEntry => ({
+    path,
+    value: 1,
+    unit: path.endsWith('.K') ? '{ind}/har' : path.endsWith('.r') ? '/a' : '1',
+    form: 'plain',
+    uncertainty: { kind: 'cv', percent: 10 },
+    source: { kind: 'own survey', text: 'Summer surveys' },
+    note: '',
+    overrideReason: ''
+  }))
+};
 const finding = (change: Partial<Parameters<typeof partFindings>[0]> = {}) =>
   partFindings({
     question: crayfish,
