@@ -3,7 +3,7 @@
  * joined by continuation, and what begins where another branch loses or gains a species is followed too.
  */
 import type { ModelSpec } from '../model/spec';
-import { locate, tangentAt, walk, type CurvePoint } from './continuation';
+import { between, locate, tangentAt, walk, type CurvePoint } from './continuation';
 import { findEquilibria } from './equilibria';
 import { faceKeyOf, faceOf, familyOf, type Face, type FaceKey, type Family } from './faces';
 import type { Equilibrium } from './results';
@@ -51,6 +51,8 @@ interface Seed {
 const BEYOND = 1e7;
 /** Two points nearer than this, in units of the scale, are one. */
 const SAME = 1e-7;
+/** A point of a stretch this near to a place, in units of the scale, is that place. */
+const NEAR = 1e-6;
 
 /** Distance of two points in units of the scale, by state alone. */
 function apart(face: Face, a: Float64Array, b: Float64Array): number {
@@ -148,7 +150,8 @@ function oneWay(
     points.push(next);
     const { x, y } = face.plane(next.z);
     if (x > BEYOND * sizes[0] || y > BEYOND * sizes[1]) return { points, end: 'unbounded' };
-    if (points.length > 4 && passes(face, here, next, start.z)) return { points, end: 'closed' };
+    if (points.length > 4 && agrees(face, next, start) && passes(face, here, next, start.z))
+      return { points, end: 'closed' };
     here = next;
   }
   return { points, end: 'lost' };
@@ -195,11 +198,16 @@ function passes(face: Face, a: CurvePoint, b: CurvePoint, z: Float64Array): bool
   }
   const share = along / chord;
   if (!(share >= -1e-9 && share <= 1 + 1e-9)) return false;
-  let off = 0;
-  for (let i = 0; i < z.length; i++) {
-    off = Math.max(off, Math.abs(a.z[i]! + share * (b.z[i]! - a.z[i]!) - z[i]!) / scale[i]!);
-  }
-  return off <= 0.25 * Math.sqrt(chord);
+  // Another part of the curve may run close by: only the point of this very stretch counts.
+  const there = between(face.curve, a, b, Math.min(1, Math.max(0, share)));
+  return there !== null && there.every((value, i) => Math.abs(value - z[i]!) <= NEAR * scale[i]!);
+}
+
+/** Whether a walk goes on in the direction in which it began. */
+function agrees(face: Face, { tangent }: CurvePoint, start: CurvePoint): boolean {
+  const scale = new Float64Array(tangent.length);
+  face.curve.scale(start.z, scale);
+  return tangent.reduce((sum, entry, i) => sum + (entry / scale[i]!) * (start.tangent[i]! / scale[i]!), 0) > 0;
 }
 
 /** Marks the seeds that a stretch of a branch passes. */
@@ -299,7 +307,7 @@ export function branchesOf(
 function touches(face: Face, a: CurvePoint | undefined, b: CurvePoint, z: Float64Array): boolean {
   const scale = new Float64Array(z.length);
   face.curve.scale(z, scale);
-  if (z.every((value, i) => Math.abs(value - b.z[i]!) < 1e-6 * scale[i]!)) return true;
+  if (z.every((value, i) => Math.abs(value - b.z[i]!) < NEAR * scale[i]!)) return true;
   return a !== undefined && passes(face, a, b, z);
 }
 
