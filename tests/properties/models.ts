@@ -137,3 +137,36 @@ export const drafts: fc.Arbitrary<Draft> = fc.oneof(competitions, consumers);
 
 /** One seed for all laws: a failure must be the same failure tomorrow. */
 export const SEED = 20260104;
+
+/** Digits as people write them: zeros of coefficients, equal rates and merged roots come up by themselves. */
+function rounded(value: unknown): unknown {
+  if (typeof value === 'number') return Number(value.toPrecision(1));
+  if (typeof value !== 'object' || value === null) return value;
+  const entries = Object.entries(value).map(([key, inner]) => [key, rounded(inner)] as const);
+  const copy = Object.fromEntries(entries) as Record<string, unknown>;
+  const { A, K } = copy;
+  if (typeof A === 'number' && typeof K === 'number' && A >= K) copy.A = K / 2;
+  return copy;
+}
+
+/** Models of every kind in round numbers, with removal that often just balances growth. */
+export const roundModels: fc.Arbitrary<ModelSpec> = fc
+  .record({ draft: drafts, balanced: fc.constantFrom('none', 'none', 'first', 'second', 'both') })
+  .map(({ draft, balanced }) => {
+    const spec = rounded(draft.write(UNIT)) as ModelSpec;
+    const balance = <S extends ManagedSpec & { growth?: { r: number } }>(species: S, at: string): S =>
+      balanced === at || balanced === 'both'
+        ? { ...species, removal: { ...species.removal, effort: species.growth?.r ?? 0 } }
+        : species;
+    return { ...spec, first: balance(spec.first, 'first'), second: balance(spec.second, 'second') } as ModelSpec;
+  });
+
+/**
+ * How many models a law is held against. With SEDGELINE_PROPERTIES=full ten times as many, 25,000 for the laws of equilibria:
+ * some minutes, for whoever has changed the search.
+ */
+export const runs = (usual: number): number => (process.env.SEDGELINE_PROPERTIES === 'full' ? 10 * usual : usual);
+/** Side of the grid of starts of the independent search. */
+export const STARTS = process.env.SEDGELINE_PROPERTIES === 'full' ? 24 : 12;
+/** Milliseconds that a law may take. */
+export const PATIENCE = process.env.SEDGELINE_PROPERTIES === 'full' ? 3_600_000 : 60_000;
