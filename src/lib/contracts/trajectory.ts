@@ -43,7 +43,7 @@ export const TrajectoryRequest = z
         ctx.addIssue({ code: 'custom', path: ['samples'], message: 'So many times do not fit into so short a span.' });
     }
     r.times?.forEach((t, i) => {
-      if (t < r.span[0] || t > r.span[1] || (i > 0 && t <= (r.times as number[])[i - 1]!))
+      if (t < r.span[0] || t > r.span[1] || (i > 0 && t <= (r.times?.[i - 1] ?? -Infinity)))
         ctx.addIssue({ code: 'custom', path: ['times', i], message: 'Times must rise and lie inside the span.' });
     });
   });
