@@ -12,6 +12,7 @@ export { coordinatesFor, formFor, netAdditionOf, type Form } from './analysis/co
 export { findEquilibria, type EquilibriaOptions } from './analysis/equilibria';
 export * from './analysis/limitCycles';
 export { excludeCycles, type NoCycles } from './analysis/excludeCycles';
+export { globalClaim, type GlobalClaim } from './analysis/globalClaim';
 export * from './analysis/separatrices';
 export * from './analysis/outcome';
 export { basinsOf, type Basin, type Basins } from './analysis/basins';

@@ -80,16 +80,19 @@ function byDulac(k: Coefficients<Interval>): NoCycles | null {
   if (k.s2.hi > 0) high = Math.min(high, 1);
   if (k.s2.lo < 0) low = Math.max(low, 1);
   if (!(low <= high)) return null;
-  const between =
-    Number.isFinite(low) && Number.isFinite(high) ? (low + high) / 2 : Number.isFinite(low) ? low + 1 : high - 1;
-  const exponent = low <= 0 && high >= 0 ? 0 : between;
-  const whole = add(parts, times(exponent, pull));
-  // Where everything vanishes nothing is excluded: that is how the classical model has only closed orbits.
-  const strict = whole.some((c) => signOf(c) === -1) || (crowds && exponent > -1);
-  if (!strict || !isNeverPositive(whole, end)) return null;
+  const isProof = (exponent: number): boolean => {
+    const whole = add(parts, times(exponent, pull));
+    // Where everything vanishes nothing is excluded: that is how the classical model has only closed orbits.
+    const strict = whole.some((c) => signOf(c) === -1) || (crowds && exponent > -1);
+    return strict && isNeverPositive(whole, end);
+  };
+  // The mildest weights first; room on both sides keeps rounding out of the proof.
+  const inside = [low + Math.min(1, (high - low) / 2), high - Math.min(1, (high - low) / 2)];
+  const exponent = [0, ...inside].find((value) => value >= low && value <= high && isProof(value));
+  if (exponent === undefined) return null;
   return {
     by: 'Dulac',
-    detail: `By Dulac’s criterion (weight y^${Number((exponent - 1).toPrecision(3))} over the share eaten) no path closes on itself.`
+    detail: `By Dulac’s criterion (weight y^${Number((exponent - 1).toFixed(3))} over the share eaten) no path closes on itself.`
   };
 }
 
