@@ -215,7 +215,7 @@ function streamOf(name: Int32Array): RandomStream {
     return k;
   };
 
-  /** @source hormann1993binomial (transformed rejection with squeeze) */
+  /** @source hormann1993b (transformed rejection with squeeze) */
   const binomialByRejection = (n: number, p: number): number => {
     const q = 1 - p;
     const spread = Math.sqrt(n * p * q);

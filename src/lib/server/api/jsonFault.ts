@@ -46,9 +46,9 @@ class Scanner {
       this.at += 1;
       if (!this.digits()) return false;
     }
-    if (this.next !== 'e' && this.next !== 'E') return true;
+    if (!/[eE]/.test(this.next)) return true;
     this.at += 1;
-    if (this.next === '+' || this.next === '-') this.at += 1;
+    if (/[+-]/.test(this.next)) this.at += 1;
     return this.digits();
   }
 
