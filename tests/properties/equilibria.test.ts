@@ -31,9 +31,15 @@ describe('equilibria of models of every kind', () => {
     'misses none that an independent search finds',
     () => {
       let compared = 0;
+      let doubtful = 0;
       const kinds = new Set<string>();
       const compare = (spec: ModelSpec) => {
         const report = findEquilibria(spec);
+        // Who says that something may be missing has not missed it; there must be few of those.
+        if (!report.complete) {
+          doubtful += 1;
+          return;
+        }
         const leslie = spec.interaction === 'consumer-resource' && spec.second.growth?.kind === 'leslie';
         for (const root of multistart(compile(spec), REACH, REACH, STARTS)) {
           // Next to a merger Newton's method itself is not to be trusted; the ceiling of leslie growth ends at x = 0.
@@ -52,6 +58,7 @@ describe('equilibria of models of every kind', () => {
       fc.assert(fc.property(roundModels, compare), { seed: SEED + 4, numRuns: runs(1000) });
       // A law that nothing was held against proves nothing.
       expect(compared).toBeGreaterThan(runs(4000));
+      expect(doubtful).toBeLessThan(runs(20));
       // Both forms of competition by nine pairs of growth; three responses by three growths by three kinds of consumer.
       expect(kinds.size).toBe(18 + 27);
     },

@@ -37,6 +37,12 @@ export function secondAlone<T>(ring: Ring<T>, k: Coefficients<T>): Polynomial<T>
   return ownEquation(ring, k.q, k.s2);
 }
 
+/** A rival's equation in its own abundance once that of the other, which it does not act on, is known. */
+export function alongside<T>(ring: Ring<T>, k: Coefficients<T>, of: 'first' | 'second', other: T): Polynomial<T> {
+  const [perHead, constant, loss] = of === 'first' ? [k.p, k.s1, k.c12] : [k.q, k.s2, k.c21];
+  return ownEquation(ring, [ring.sub(perHead[0], ring.mul(loss, other)), perHead[1], perHead[2]], constant);
+}
+
 interface Side<T> {
   perHead: readonly T[];
   constant: T;

@@ -68,6 +68,40 @@ describe('merging equilibria', () => {
   });
 });
 
+describe('a rival that the other does not touch', () => {
+  it('rests by itself, and the crowd of points beside it is told apart', () => {
+    const found = findEquilibria({
+      interaction: 'competition',
+      first: { growth: { kind: 'allee', r: 4.004, K: 1, A: 0.04 } },
+      second: { growth: { kind: 'allee', r: 1, K: 0.07, A: 0.001 }, removal: { quota: 0.07 } },
+      competition: { form: 'encounters', b12: 0.1, b21: 0 }
+    });
+    expect(found.complete).toBe(true);
+    expect(found.equilibria.map((point) => point.class)).toEqual([
+      'saddle',
+      'stable node',
+      'unstable node',
+      'saddle',
+      'stable node',
+      'saddle'
+    ]);
+  });
+
+  it('is not proven where stocking and quota differ by rounding alone', () => {
+    const report = findEquilibria({
+      interaction: 'consumer-resource',
+      first: {
+        growth: { kind: 'exponential', r: 0.1 },
+        removal: { effort: 0.01, quota: 1 },
+        stocking: 0.9999999999999999
+      },
+      second: { growth: { kind: 'logistic', r: 1.066271005879719, K: 1 }, removal: { effort: 1, quota: 0.001 } },
+      feeding: { response: 'holling-1', a: 0.2, e: 0.1 }
+    });
+    expect(report.complete).toBe(false);
+  });
+});
+
 describe('signs below the rounding of the rates', () => {
   it('damps swings whose damping is a trillionth of a trillionth of their speed', () => {
     // Trace = -r x/K exactly, next to a determinant of 1e-12.

@@ -15,7 +15,7 @@ import {
 import type { Polynomial } from '../numeric/polynomial';
 import { rangeOf, type RootPlace } from '../numeric/realRoots';
 import { certifyBox, polish, tidy, type CertifiedBox, type Lifted } from './certify';
-import { eliminate, firstAlone, secondAlone, type Elimination } from './elimination';
+import { alongside, eliminate, firstAlone, secondAlone, type Elimination } from './elimination';
 import { rootsOf, type PinnedPlace, type SignedRoots } from './rootPlaces';
 
 /** An equilibrium before it is classified. */
@@ -149,6 +149,10 @@ class Collector implements Search {
 
   /** Equilibria off the invariant axes. */
   private together(): void {
+    if (this.k.interaction === 'competition') {
+      const [untouchedFirst, untouchedSecond] = [INTERVAL.isZero(this.k.c12), INTERVAL.isZero(this.k.c21)];
+      if (untouchedFirst !== untouchedSecond && this.oneByOne(untouchedFirst ? 'first' : 'second')) return;
+    }
     const elimination = eliminate(INTERVAL, this.k);
     if (elimination === null) return;
     if (elimination.along === 'both') {
@@ -172,6 +176,50 @@ class Collector implements Search {
     const roots = rootsOf(resultant, this.includeInfeasible);
     const crowd = roots.places.reduce((sum, place) => sum + (place.single ? 0 : place.atMost), 0);
     return { elimination: { ...elimination, resultant }, roots, crowd };
+  }
+
+  /**
+   * A rival that the other does not touch rests by itself, and the other rests alongside: two short polynomials in place of a
+   * long one whose roots crowd. False where the first of them vanishes.
+   */
+  private oneByOne(free: 'first' | 'second'): boolean {
+    const bound = free === 'first' ? 'second' : 'first';
+    const alone = free === 'first' ? firstAlone<Interval> : secondAlone<Interval>;
+    const exactly = free === 'first' ? firstAlone<Fraction> : secondAlone<Fraction>;
+    const own = settle(alone(INTERVAL, this.k), () => exactly(FRACTION, this.exact()));
+    const roots = rootsOf(own, this.includeInfeasible);
+    if (roots.vanishes) return false;
+    for (const root of roots.places) {
+      const beside = rootsOf(alongside(INTERVAL, this.k, bound, interval(root.lo, root.hi)), this.includeInfeasible);
+      const at = tidy(root.value, interval(root.lo, root.hi));
+      if (beside.vanishes) {
+        this.curves.push({ along: bound, at: () => at, cuts: [] });
+        continue;
+      }
+      for (const other of beside.places) {
+        const multiplicity = root.atMost * other.atMost;
+        if (multiplicity > 1) this.merged = true;
+        this.settleAt(this.place(free, root.value, other.value), this.place(free, root, other), multiplicity);
+      }
+      if (beside.atZero > 0) this.mergeInto(...this.place(free, at, 0), beside.atZero * root.atMost);
+      if (beside.atInfinity > 0) this.doubts.push(FAR_AWAY);
+    }
+    if (roots.atZero > 0) {
+      const beside = rootsOf(alongside(INTERVAL, this.k, bound, ZERO), this.includeInfeasible);
+      beside.places.forEach((other) => this.mergeInto(...this.place(free, 0, other.value), roots.atZero));
+      if (beside.atZero > 0) this.mergeInto(0, 0, roots.atZero * beside.atZero);
+    }
+    if (roots.atInfinity > 0) this.doubts.push(FAR_AWAY);
+    return true;
+  }
+
+  /** A point between two places, more closely where the test in the plane succeeds. */
+  private settleAt([x, y]: [number, number], [px, py]: [RootPlace, RootPlace], multiplicity: number): void {
+    const polished = multiplicity === 1 ? polish(this.lifted, x, y) : null;
+    const box = polished && certifyBox(this.lifted, polished.x, polished.y);
+    const meets = box && box.x.lo <= px.hi && box.x.hi >= px.lo && box.y.lo <= py.hi && box.y.hi >= py.lo;
+    if (polished && box && meets) this.accept(polished.x, polished.y, 1, box);
+    else this.accept(x, y, multiplicity, { x: interval(px.lo, px.hi), y: interval(py.lo, py.hi) });
   }
 
   private uncoupled(first: Polynomial<Interval>, second: Polynomial<Interval>): void {
@@ -220,7 +268,7 @@ class Collector implements Search {
     if (roots.atInfinity > 0) this.rootAtInfinity(elimination, roots.atInfinity);
   }
 
-  private place(along: 'first' | 'second', t: number, u: number): [number, number] {
+  private place<T>(along: 'first' | 'second', t: T, u: T): [T, T] {
     return along === 'first' ? [t, u] : [u, t];
   }
 
@@ -331,6 +379,9 @@ class Collector implements Search {
     const { along, top, bottom } = elimination;
     const invariant = along === 'first' ? this.takesFirstByHead : this.takesSecondByHead;
     const [head, foot] = [top[0] ?? ZERO, bottom[0] ?? ZERO];
+    const added = along === 'first' ? this.k.s1 : this.k.s2;
+    if (!invariant && contains(added, 0))
+      this.doubts.push('an equilibrium within rounding of an axis may lie beyond it');
     if (!invariant || distanceToZero(foot) === 0) return;
     const u = divide(head, foot);
     if (u.hi < 0) return;
