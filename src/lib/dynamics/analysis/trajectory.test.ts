@@ -182,3 +182,52 @@ describe('laws', () => {
     base.y.forEach((y, i) => expect(scaled.y[i]! / 1e6 / y).toBeCloseTo(1, 8));
   });
 });
+
+describe('a start that is an equilibrium', () => {
+  it('is kept for ever where it is one exactly, though the smallest rounding would lead away', () => {
+    const cases: [ModelSpec, { x: number; y: number }][] = [
+      [
+        {
+          interaction: 'consumer-resource',
+          first: { growth: { kind: 'allee', r: 0.4, K: 100, A: 20 } },
+          second: { mortality: 0.21 },
+          feeding: { response: 'holling-1', a: 0.01, e: 0.3 }
+        },
+        { x: 20, y: 0 }
+      ],
+      [
+        {
+          interaction: 'competition',
+          first: { growth: { kind: 'logistic', r: 3, K: 3 } },
+          second: { growth: { kind: 'logistic', r: 2, K: 2 } },
+          competition: { form: 'coefficients', alpha12: 2, alpha21: 1 }
+        },
+        { x: 1, y: 1 }
+      ],
+      [
+        {
+          interaction: 'competition',
+          first: { growth: { kind: 'logistic', r: 0.3, K: 100 }, removal: { quota: 6.3 } },
+          second: { growth: { kind: 'logistic', r: 2, K: 2 } },
+          competition: { form: 'coefficients', alpha12: 0, alpha21: 0 }
+        },
+        { x: 30, y: 0 }
+      ]
+    ];
+    for (const [spec, start] of cases) {
+      const path = simulate(spec, {
+        start,
+        span: [0, 2000],
+        samples: 5,
+        thresholds: [{ species: 'first', below: start.x, above: start.x }]
+      });
+      expect(path.t).toEqual([0, 500, 1000, 1500, 2000]);
+      expect(path.x.every((n) => n === start.x)).toBe(true);
+      expect(path.y.every((n) => n === start.y)).toBe(true);
+      expect(path.events).toEqual([]);
+      // A hair beside it is not the same.
+      const beside = simulate(spec, { start: { ...start, x: start.x * (1 - 1e-9) }, span: [0, 2000], samples: 2 });
+      expect(Math.abs(beside.x[1]! - start.x)).toBeGreaterThan(0.1);
+    }
+  });
+});

@@ -7,6 +7,7 @@ import type { Outcome } from '../solve/problem';
 import { ENGINE_VERSION } from '../version';
 import type { Coordinates } from './coordinates';
 import { followPath, levelOf, type Watched } from './path';
+import { restsExactly } from './restsExactly';
 import { seasonalSystem, type Season } from './seasonal';
 import { simulateSchedule, type AppliedPulse, type Pulse } from './schedule';
 
@@ -174,6 +175,21 @@ function simulateFast(spec: ModelSpec, options: TrajectoryOptions, times: Float6
   };
 }
 
+/** The path that stays where it is. */
+function atRest(start: { x: number; y: number }, times: Float64Array): TrajectoryResult {
+  return {
+    t: Array.from(times),
+    x: Array.from(times, () => start.x),
+    y: Array.from(times, () => start.y),
+    events: [],
+    steps: { accepted: 0, rejected: 0, evaluations: 1 },
+    outcome: { status: 'reached' },
+    remark: 'The start is an equilibrium: nothing changes.',
+    stiff: false,
+    engine: ENGINE_VERSION
+  };
+}
+
 /**
  * Follows a model from a start.
  * @param spec a checked model. @param options start, span, output times, accuracy, thresholds; see TrajectoryOptions.
@@ -190,9 +206,10 @@ export function simulate(spec: ModelSpec, options: TrajectoryOptions): Trajector
     const { schedule, ...plain } = options;
     return simulateSchedule(spec, plain, Array.from(times), schedule, simulate);
   }
+  const system = options.season ? seasonalSystem(spec, options.season) : compile(spec);
+  if (!options.season && restsExactly(spec, system, start.x, start.y)) return atRest(start, times);
   const fast = options.season ? null : simulateFast(spec, options, times);
   if (fast !== null) return fast;
-  const system = options.season ? seasonalSystem(spec, options.season) : compile(spec);
   const t: number[] = [];
   const x: number[] = [];
   const y: number[] = [];
