@@ -50,13 +50,16 @@ export function makeEquilibriaTable(): EquilibriaTable {
 const ROUNDING = 1e-13;
 const abs = (n: number): number => (n < 0 ? -n : n);
 
-/** Class and eigenvalues of the Jacobian [[a, b], [c, d]] into place `i` of a table. */
-function put(table: EquilibriaTable, x: number, y: number, a: number, b: number, c: number, d: number): void {
-  const i = table.count;
-  if (i >= MOST_EQUILIBRIA) return;
-  table.count = i + 1;
-  const { points } = table;
+/**
+ * Class and eigenvalues of place `i`, whose Jacobian stands in the table. Numbers travel in the table and not as arguments:
+ * a call that is not inlined would put each of them on the heap.
+ */
+function classifyPlace(points: Float64Array, classes: Uint8Array, i: number): void {
   const at = i * POINT_WIDTH;
+  const a = points[at + 2]!;
+  const b = points[at + 3]!;
+  const c = points[at + 4]!;
+  const d = points[at + 5]!;
   const trace = a + d;
   const coupling = b * c;
   const determinant = a * d - coupling;
@@ -64,21 +67,27 @@ function put(table: EquilibriaTable, x: number, y: number, a: number, b: number,
   const discriminant = gap * gap + 4 * coupling;
   const scale = abs(a) + abs(d);
   const s2 = scale * scale + abs(coupling);
-  points[at] = x;
-  points[at + 1] = y;
-  points[at + 2] = a;
-  points[at + 3] = b;
-  points[at + 4] = c;
-  points[at + 5] = d;
   let code: number;
-  if (discriminant < 0 && -discriminant > ROUNDING * s2) {
+  if (coupling === 0) {
+    // A triangular matrix has its eigenvalues on the diagonal, each with a scale of its own; so it is on the axes.
+    points[at + 6] = a > d ? a : d;
+    points[at + 7] = 0;
+    points[at + 8] = a > d ? d : a;
+    points[at + 9] = 0;
+    if (a === 0 || d === 0) code = NON_HYPERBOLIC;
+    else if (a < 0 !== d < 0) code = SADDLE;
+    else {
+      code = a < 0 ? 0 : 5;
+      if (gap * gap <= ROUNDING * s2) code += b === 0 && c === 0 ? 2 : 3;
+    }
+  } else if (discriminant < 0 && -discriminant > ROUNDING * s2) {
     const im = 0.5 * Math.sqrt(-discriminant);
     const re = 0.5 * trace;
     points[at + 6] = re;
     points[at + 7] = im;
     points[at + 8] = re;
     points[at + 9] = -im;
-    code = abs(trace) * abs(trace) <= ROUNDING * ROUNDING * s2 ? NON_HYPERBOLIC : trace < 0 ? 1 : 6;
+    code = trace * trace <= ROUNDING * ROUNDING * s2 ? NON_HYPERBOLIC : trace < 0 ? 1 : 6;
   } else {
     const root = discriminant > 0 ? 0.5 * Math.sqrt(discriminant) : 0;
     // The larger one by sum, the smaller by quotient: no cancellation.
@@ -88,20 +97,22 @@ function put(table: EquilibriaTable, x: number, y: number, a: number, b: number,
     points[at + 7] = 0;
     points[at + 8] = strong > weak ? weak : strong;
     points[at + 9] = 0;
-    // The eigenvalues of a triangular matrix are its diagonal, each with a scale of its own.
-    const nil = coupling === 0 ? a === 0 || d === 0 : abs(determinant) <= ROUNDING * s2;
-    if (nil) code = NON_HYPERBOLIC;
+    if (abs(determinant) <= ROUNDING * s2) code = NON_HYPERBOLIC;
     else if (determinant < 0) code = SADDLE;
     else {
       code = trace < 0 ? 0 : 5;
-      if (abs(discriminant) <= ROUNDING * s2) code += b === 0 && c === 0 ? 2 : 3;
+      if (abs(discriminant) <= ROUNDING * s2) code += 3;
     }
   }
-  table.classes[i] = code;
+  classes[i] = code;
 }
 
-/** Jacobian of a model at a point into a table; the point must not be x = 0 under a ceiling that follows the resource. */
-function putPoint(table: EquilibriaTable, k: Float64Array, isSigmoid: boolean, x: number, y: number): void {
+/** The rest of a place whose x and y stand in the table; not for x = 0 under a ceiling that follows the resource. */
+function fillPlace(table: EquilibriaTable, k: Float64Array, isSigmoid: boolean, i: number): void {
+  const { points } = table;
+  const at = i * POINT_WIDTH;
+  const x = points[at]!;
+  const y = points[at + 1]!;
   const a = k[A]!;
   let j11 = k[P0]! + (2 * k[P1]! + 3 * k[P2]! * x) * x - k[C]! * y;
   let j12 = -k[C]! * x;
@@ -125,7 +136,21 @@ function putPoint(table: EquilibriaTable, k: Float64Array, isSigmoid: boolean, x
     j21 += l * ratio * ratio;
     j22 -= 2 * l * ratio;
   }
-  put(table, x, y, j11, j12, j21, j22);
+  points[at + 2] = j11;
+  points[at + 3] = j12;
+  points[at + 4] = j21;
+  points[at + 5] = j22;
+  classifyPlace(points, table.classes, i);
+}
+
+/** Adds a point to a table that has room. */
+function putPoint(table: EquilibriaTable, k: Float64Array, isSigmoid: boolean, x: number, y: number): void {
+  const i = table.count;
+  if (i >= MOST_EQUILIBRIA) return;
+  table.points[i * POINT_WIDTH] = x;
+  table.points[i * POINT_WIDTH + 1] = y;
+  table.count = i + 1;
+  fillPlace(table, k, isSigmoid, i);
 }
 
 const poly = new Float64Array(16);
@@ -147,19 +172,39 @@ function times(a: Float64Array, da: number, b: Float64Array, db: number, out: Fl
   return degree;
 }
 
-/** Equilibria off the axes of two species that touch by encounters alone, without an Allee effect. */
-function linearInterior(table: EquilibriaTable, k: Float64Array): void {
+/** Numbers of one place, all but its eigenvalues. Small enough to be inlined. */
+function write(p: Float64Array, i: number, x: number, y: number, a: number, b: number, c: number, d: number): void {
+  const at = i * POINT_WIDTH;
+  p[at] = x;
+  p[at + 1] = y;
+  p[at + 2] = a;
+  p[at + 3] = b;
+  p[at + 4] = c;
+  p[at + 5] = d;
+}
+
+/** All equilibria of two species that touch by encounters alone, without an Allee effect. */
+function linearEquilibria(table: EquilibriaTable, k: Float64Array): void {
+  const { points, classes } = table;
   const p0 = k[P0]!;
   const p1 = k[P1]!;
   const q0 = k[Q0]!;
   const q1 = k[Q1]!;
   const c = k[C]!;
   const d = k[D]!;
+  let n = 1;
+  write(points, 0, 0, 0, p0, 0, 0, q0);
+  const xAlone = -p0 / p1;
+  if (xAlone > 0 && xAlone < Infinity) write(points, n++, xAlone, 0, -p0, -c * xAlone, 0, q0 - d * xAlone);
+  const yAlone = -q0 / q1;
+  if (yAlone > 0 && yAlone < Infinity) write(points, n++, 0, yAlone, p0 - c * yAlone, 0, -d * yAlone, -q0);
   // p1 x - c y = -p0, -d x + q1 y = -q0
   const determinant = p1 * q1 - c * d;
   const x = -(p0 * q1 + c * q0) / determinant;
   const y = -(p1 * q0 + d * p0) / determinant;
-  if (x > 0 && y > 0 && x < Infinity && y < Infinity) put(table, x, y, p1 * x, -c * x, -d * y, q1 * y);
+  if (x > 0 && y > 0 && x < Infinity && y < Infinity) write(points, n++, x, y, p1 * x, -c * x, -d * y, q1 * y);
+  for (let i = 0; i < n; i++) classifyPlace(points, classes, i);
+  table.count = n;
 }
 
 /** Roots of n's growth per head less a loss, n = 0 left out. @param p place of its rates. */
@@ -270,6 +315,73 @@ function consumerInterior(table: EquilibriaTable, k: Float64Array, isSigmoid: bo
   }
 }
 
+/**
+ * All equilibria of a consumer in the commonest case, written out: no Allee effect, no interference, no ceiling that
+ * follows the resource.
+ */
+function leanConsumer(table: EquilibriaTable, k: Float64Array, isSigmoid: boolean): void {
+  const { points, classes } = table;
+  const a = k[A]!;
+  const ah = a * k[H]!;
+  const e = k[E]!;
+  const q0 = k[Q0]!;
+  const q1 = k[Q1]!;
+  const p0 = k[P0]!;
+  const p1 = k[P1]!;
+  let n = 1;
+  write(points, 0, 0, 0, p0, 0, 0, q0);
+  const K = -p0 / p1;
+  if (K > 0 && K < Infinity) {
+    const square = isSigmoid ? K * K : K;
+    const eaten = (a * square) / (1 + ah * square);
+    write(points, n++, K, 0, -p0, -eaten, 0, q0 + e * eaten);
+  }
+  const alone2 = -q0 / q1;
+  if (alone2 > 0 && alone2 < Infinity) {
+    const byX = isSigmoid ? 0 : a * alone2;
+    write(points, n++, 0, alone2, p0 - byX, 0, e * byX, -q0);
+  }
+  let nRoots = 0;
+  if (q1 === 0) {
+    const level = -q0 / (e * a + q0 * ah);
+    if (level > 0 && level < Infinity) {
+      roots[0] = isSigmoid ? Math.sqrt(level) : level;
+      nRoots = 1;
+    }
+  } else {
+    // (q0 H + e a x^power) psi + q1 (p0 + p1 x) H^2
+    let degree = 3;
+    if (isSigmoid) {
+      poly[0] = q1 * p0;
+      poly[1] = q0 * a + q1 * p1;
+      poly[2] = 2 * ah * q1 * p0;
+      poly[3] = (q0 * ah + e * a) * a + 2 * ah * q1 * p1;
+      poly[4] = ah * ah * q1 * p0;
+      poly[5] = ah * ah * q1 * p1;
+      degree = 5;
+    } else {
+      poly[0] = q0 * a + q1 * p0;
+      poly[1] = (q0 * ah + e * a) * a + q1 * (p1 + 2 * ah * p0);
+      poly[2] = q1 * ah * (2 * p1 + ah * p0);
+      poly[3] = q1 * ah * ah * p1;
+    }
+    nRoots = positiveRootsInto(poly, degree, roots);
+  }
+  for (let i = 0; i < nRoots; i++) {
+    const x = roots[i]!;
+    const load = isSigmoid ? ah * x * x : ah * x;
+    const psi = isSigmoid ? a * x : a;
+    const y = ((p0 + p1 * x) * (1 + load)) / psi;
+    if (!(y > 0 && y < Infinity)) continue;
+    const u = 1 / (1 + load);
+    const byX = (isSigmoid ? 2 * psi : psi) * y * u * u;
+    const byY = psi * x * u;
+    write(points, n++, x, y, p0 + 2 * p1 * x - byX, -byY, e * byX, q0 + 2 * q1 * y + e * byY);
+  }
+  for (let i = 0; i < n; i++) classifyPlace(points, classes, i);
+  table.count = n;
+}
+
 /** Whether a model is one that `equilibriaFast` takes: nothing added or taken by the unit. */
 export function hasFastEquilibria(k: Float64Array): boolean {
   return k[S1] === 0 && k[S2] === 0;
@@ -288,15 +400,12 @@ export function equilibriaFast(k: Float64Array, isSigmoid: boolean, table: Equil
   const p1 = k[P1]!;
   const q0 = k[Q0]!;
   const q1 = k[Q1]!;
-  const c = k[C]!;
-  const d = k[D]!;
   if (k[A] === 0 && k[L] === 0 && k[P2] === 0 && k[Q2] === 0) {
-    put(table, 0, 0, p0, 0, 0, q0);
-    const x = -p0 / p1;
-    if (x > 0 && x < Infinity) put(table, x, 0, -p0, -c * x, 0, q0 - d * x);
-    const y = -q0 / q1;
-    if (y > 0 && y < Infinity) put(table, 0, y, p0 - c * y, 0, -d * y, -q0);
-    linearInterior(table, k);
+    linearEquilibria(table, k);
+    return;
+  }
+  if (k[A] !== 0 && k[L] === 0 && k[W] === 0 && k[P2] === 0 && k[Q2] === 0) {
+    leanConsumer(table, k, isSigmoid);
     return;
   }
   const follows = k[L] !== 0;

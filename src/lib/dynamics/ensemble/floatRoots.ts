@@ -10,11 +10,17 @@ const derivatives = new Float64Array(WIDTH * WIDTH);
 const workA = new Float64Array(WIDTH);
 const workB = new Float64Array(WIDTH);
 
-/** A root of the polynomial in row `at` between lo and hi, where its signs differ; `falls` when it is positive at lo. */
-function rootBetween(c: Float64Array, at: number, degree: number, lo: number, hi: number, falls: boolean): number {
-  let low = lo;
-  let high = hi;
-  let x = 0.5 * (lo + hi);
+/** Ends of a bracket on the way in, the root on the way out: numbers that are arguments of a call go by the heap. */
+const bracket = new Float64Array(3);
+
+/**
+ * Into bracket[2], a root of the polynomial in row `at` between bracket[0] and bracket[1], where its signs differ.
+ * @param falls whether it is positive at the lower end.
+ */
+function rootInBracket(c: Float64Array, at: number, degree: number, falls: boolean): void {
+  let low = bracket[0]!;
+  let high = bracket[1]!;
+  let x = 0.5 * (low + high);
   for (let i = 0; i < 200; i++) {
     let value = c[at + degree]!;
     let slope = 0;
@@ -22,7 +28,7 @@ function rootBetween(c: Float64Array, at: number, degree: number, lo: number, hi
       slope = slope * x + value;
       value = value * x + c[at + j]!;
     }
-    if (value === 0) return x;
+    if (value === 0) break;
     if (value > 0 === falls) low = x;
     else high = x;
     let next = x - value / slope;
@@ -32,9 +38,9 @@ function rootBetween(c: Float64Array, at: number, degree: number, lo: number, hi
     }
     const moved = next > x ? next - x : x - next;
     x = next;
-    if (moved <= 2.3e-16 * x || high - low <= 2.3e-16 * high) return x;
+    if (moved <= 2.3e-16 * x || high - low <= 2.3e-16 * high) break;
   }
-  return x;
+  bracket[2] = x;
 }
 
 function valueAt(c: Float64Array, at: number, degree: number, x: number): number {
@@ -117,7 +123,10 @@ export function positiveRootsInto(c: Float64Array, degree: number, roots: Float6
   }
   const bound = 2 * largest;
   if (changes === 1) {
-    roots[0] = rootBetween(d, own, n, 0, bound, d[own]! > 0);
+    bracket[0] = 0;
+    bracket[1] = bound;
+    rootInBracket(d, own, n, d[own]! > 0);
+    roots[0] = bracket[2]!;
     return 1;
   }
 
@@ -144,7 +153,12 @@ export function positiveRootsInto(c: Float64Array, degree: number, roots: Float6
         // Past a double root the sign is the one before it.
         continue;
       }
-      if (atLo > 0 !== atHi > 0) target[nFound++] = rootBetween(d, at, k, lo, hi, atLo > 0);
+      if (atLo > 0 !== atHi > 0) {
+        bracket[0] = lo;
+        bracket[1] = hi;
+        rootInBracket(d, at, k, atLo > 0);
+        target[nFound++] = bracket[2]!;
+      }
       lo = hi;
       atLo = atHi;
     }
