@@ -67,6 +67,7 @@ function legsOf(spec: ModelSpec, result: TrajectoryResult): Leg[] {
 export function crossCheck(spec: ModelSpec, result: TrajectoryResult, options: CrossCheckOptions = {}): CrossCheck {
   const none = (reason: string): CrossCheck => ({ method: 'odex', largestRelativeDifference: null, reason });
   if (result.t.length < 2) return none('There is nothing to compare.');
+  if (result.steps.accepted === 0) return none('The path stays at its start: there was nothing to integrate.');
   const rtol = Math.max(TIGHTEST, (options.rtol ?? 1e-8) * 1e-2);
   const atol = (options.atol ?? 1e-10) * 1e-2;
   const maxEvaluations = options.maxEvaluations ?? 400_000;
