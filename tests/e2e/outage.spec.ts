@@ -22,6 +22,8 @@ test('a database that is away is said plainly, and found again without anybodyâ€
     const refused = page.waitForResponse((response) => response.request().method() === 'POST');
     await form.getByRole('button', { name: /^Save/ }).click();
     expect((await refused).status()).toBe(503);
+    const notice = page.getByText('The records cannot be reached at the moment.');
+    await expect(notice).toBeVisible();
     await expect(form.getByLabel('Value', { exact: true })).toHaveValue('0.71');
 
     const other = await page.context().newPage();
@@ -50,9 +52,8 @@ test('a database that is away is said plainly, and found again without anybodyâ€
 
   await expect.poll(async () => (await page.request.get('/health/ready')).status(), { timeout: 60_000 }).toBe(200);
   expect(await revisionOf(page, id)).toBe(8);
-  // The person is still signed in, and the text typed before can be saved now.
-  await visit(page, `/studies/${id}/rates?edit=first.growth.r`);
-  await form.getByLabel('Value', { exact: true }).fill('0.71');
+  // The person is still signed in, and what was typed before is saved now, from the same page.
   await form.getByRole('button', { name: /^Save/ }).click();
   await expect(page.locator('tr[id="rate-first.growth.r"]')).toContainText('0.71');
+  await expect(page.getByText('The records cannot be reached at the moment.')).toBeHidden();
 });
