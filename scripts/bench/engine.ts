@@ -7,4 +7,3 @@ export * from '../../src/lib/dynamics/ensemble/fastEquilibria';
 export { eventRatesOf } from '../../src/lib/dynamics/ensemble/eventRates';
 export * as events from '../../src/lib/dynamics/ensemble/exactEvents';
 export { advanceLeaps } from '../../src/lib/dynamics/ensemble/leapEvents';
-export { randomStream } from '../../src/lib/dynamics/numeric/random';

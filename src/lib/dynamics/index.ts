@@ -43,3 +43,12 @@ export {
   type PrintOptions
 } from './model/expression';
 export { ENGINE_VERSION } from './version';
+export { integratePlanar, planarModelOf, type PlanarModel, type PlanarOptions, type PlanarPath } from './solve/planar';
+export { simulateMany, type ManyPaths } from './solve/planarMany';
+export { randomStream, type RandomStream } from './numeric/random';
+export { type DrawPlan, logMoments, type UncertainRate } from './ensemble/draws';
+export * from './ensemble/ensemble';
+export type { Turnover } from './ensemble/eventRates';
+export type { Leap } from './ensemble/leapEvents';
+export type { Bands } from './ensemble/quantiles';
+export * from './ensemble/stochastic';

@@ -77,7 +77,9 @@ const STEP_SHARE = 1e-3;
 const TIGHTEST = 5e-14;
 /** Equally spaced times, both ends exact. @param count at least 2. */
 export function equallySpaced([t0, t1]: readonly [number, number], count: number): number[] {
-  return Array.from({ length: count }, (_, i) => (i === count - 1 ? t1 : t0 + ((t1 - t0) * i) / (count - 1)));
+  const times = new Array<number>(count);
+  for (let i = 0; i < count; i++) times[i] = i === count - 1 ? t1 : t0 + ((t1 - t0) * i) / (count - 1);
+  return times;
 }
 
 function requireValid(options: TrajectoryOptions): void {
@@ -152,7 +154,11 @@ function remarkOn(outcome: Outcome, stiff: boolean): string | null {
 function simulateFast(spec: ModelSpec, options: TrajectoryOptions, times: Float64Array): TrajectoryResult | null {
   const { start, span, thresholds = [] } = options;
   if (thresholds.length > 0 || !(span[1] > span[0])) return null;
-  const inOrder = times.every((t, i) => t >= (times[i - 1] ?? span[0]) && t <= span[1]);
+  let inOrder = true;
+  for (let i = 0, before = span[0]; i < times.length; i++) {
+    inOrder &&= times[i]! >= before && times[i]! <= span[1];
+    before = times[i]!;
+  }
   const model = planarModelOf(spec);
   const settled = (start.x > 0 || model.rates[S1] === 0) && (start.y > 0 || model.rates[S2] === 0);
   if (!inOrder || !settled || !isPlanar(model.rates)) return null;
@@ -162,10 +168,19 @@ function simulateFast(spec: ModelSpec, options: TrajectoryOptions, times: Float6
     ...(options.shouldStop && { shouldStop: options.shouldStop })
   });
   if (path.end !== 'reached') return null;
+  const n = times.length;
+  const t = new Array<number>(n);
+  const x = new Array<number>(n);
+  const y = new Array<number>(n);
+  for (let i = 0; i < n; i++) {
+    t[i] = times[i]!;
+    x[i] = path.values[2 * i]!;
+    y[i] = path.values[2 * i + 1]!;
+  }
   return {
-    t: Array.from(times),
-    x: Array.from(times, (_, i) => path.values[2 * i]!),
-    y: Array.from(times, (_, i) => path.values[2 * i + 1]!),
+    t,
+    x,
+    y,
     events: [],
     steps: { accepted: path.accepted, rejected: path.rejected, evaluations: path.evaluations },
     outcome: { status: 'reached' },
@@ -201,7 +216,7 @@ function atRest(start: { x: number; y: number }, times: Float64Array): Trajector
 export function simulate(spec: ModelSpec, options: TrajectoryOptions): TrajectoryResult {
   requireValid(options);
   const { start, span, thresholds = [] } = options;
-  const times = Float64Array.from(options.times ?? equallySpaced(span, options.samples ?? 201));
+  const times = new Float64Array(options.times ?? equallySpaced(span, options.samples ?? 201));
   if (options.schedule && options.schedule.length > 0) {
     const { schedule, ...plain } = options;
     return simulateSchedule(spec, plain, Array.from(times), schedule, simulate);

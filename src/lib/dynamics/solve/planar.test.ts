@@ -3,6 +3,7 @@ import { compile } from '../model/compile';
 import type { ModelSpec } from '../model/spec';
 import { integratePlanar, makePlanarIntegrator, planarModelOf, planarTimes, primePlanar } from './planar';
 import { integrate } from './integrate';
+import { simulateMany } from './planarMany';
 import type { PlanarFamily } from './planarKernels';
 
 const logistic = { kind: 'logistic', r: 1.4, K: 900 } as const;
@@ -184,5 +185,21 @@ describe('planar integration', () => {
     expect(integratePlanar(planarModelOf(fast), start, [0, 1000], [], { shouldStop: () => true }).end).not.toBe(
       'reached'
     );
+  });
+});
+
+describe('many paths', () => {
+  it('are each what one alone is', () => {
+    const all = models.map(([, spec]) => planarModelOf(spec));
+    const starts = all.flatMap((_, i) => [100 + i, 20 + i]);
+    const many = simulateMany(all, starts, span, times, { rtol: 1e-7 });
+    all.forEach((model, i) => {
+      const alone = integratePlanar(model, { x: 100 + i, y: 20 + i }, span, times, { rtol: 1e-7 });
+      expect(many.values.slice(2 * times.length * i, 2 * times.length * (i + 1))).toEqual(alone.values);
+      expect([many.ends[i], many.last[2 * i], many.last[2 * i + 1]]).toEqual([alone.end, alone.x, alone.y]);
+    });
+    const one = simulateMany([all[0]!], [1, 2, 3, 4], [0, 5], []);
+    expect(one.last[2]).toBe(integratePlanar(all[0]!, { x: 3, y: 4 }, [0, 5], []).x);
+    expect(() => simulateMany(all, [1, 2], span, times)).toThrow(RangeError);
   });
 });
