@@ -30,6 +30,13 @@ export {
   type ThresholdReport
 } from './analysis/thresholds';
 export type { BranchOptions } from './analysis/branches';
+export {
+  cycleBranches,
+  thresholdsWithCycles,
+  type CycleBranch,
+  type CycleBranchOptions,
+  type CycleEnd
+} from './analysis/cycleBranch';
 export * from './analysis/outcomeMap';
 export * from './analysis/pathThreshold';
 export * from './analysis/vectorField';

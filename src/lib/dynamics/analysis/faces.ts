@@ -28,6 +28,8 @@ export interface Family {
   readonly q1: number;
   /** Parameter value of a q; the ends of the range exactly. */
   value(q: number): number;
+  /** The q of a parameter value. */
+  q(value: number): number;
   at(q: number): Member;
   /** Coefficients of the model at q; a constant that passes through 0 on its way does not change the equations' form. */
   coefficients(q: number): Coefficients<number>;
@@ -90,6 +92,7 @@ export function familyOf(spec: ModelSpec, path: string, [p0, p1]: readonly [numb
     q0,
     q1,
     value,
+    q: (p) => (logarithmic ? Math.log(p) : p),
     firstFree,
     secondFree,
     coefficients(q) {

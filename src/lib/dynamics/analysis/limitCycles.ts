@@ -39,7 +39,7 @@ export interface LimitCycle {
 const UNDECIDED = 1e-7;
 
 /** Follows one turn with its integrals. The section's s must be a fixed point of the return map. */
-function measure(system: System, section: Section, around: number, s: number, period: number): LimitCycle {
+export function measure(system: System, section: Section, around: number, s: number, period: number): LimitCycle {
   const c = section.coordinates;
   const { fine } = section.accuracy;
   const slopes = new Float64Array(4);

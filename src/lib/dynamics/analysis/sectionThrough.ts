@@ -66,7 +66,7 @@ function resourceCeiling(system: System, xE: number): number {
 export function sectionThrough(
   spec: ModelSpec,
   system: System,
-  point: Equilibrium,
+  point: Pick<Equilibrium, 'x' | 'y' | 'determinant'>,
   { shouldStop, accuracy = 'full' }: CycleOptions
 ): Section {
   const c = coordinatesFor(system, [
