@@ -3,6 +3,7 @@ import { compile } from '../model/compile';
 import type { ModelSpec } from '../model/spec';
 import { integratePlanar, makePlanarIntegrator, planarModelOf, planarTimes, primePlanar } from './planar';
 import { integrate } from './integrate';
+import { randomStream } from '../numeric/random';
 import { simulateMany } from './planarMany';
 import type { PlanarFamily } from './planarKernels';
 
@@ -185,6 +186,46 @@ describe('planar integration', () => {
     expect(integratePlanar(planarModelOf(fast), start, [0, 1000], [], { shouldStop: () => true }).end).not.toBe(
       'reached'
     );
+  });
+});
+
+describe('deep cycles', () => {
+  it('keep their phase at a loose tolerance, as an absolute one would not let them', () => {
+    const { uniform } = randomStream(33);
+    const between = (low: number, high: number): number => low + (high - low) * uniform();
+    const long = Array.from({ length: 401 }, (_, i) => i / 2);
+    const worst = (found: Float64Array, exact: Float64Array): number =>
+      Math.max(
+        ...[0, 1].map((species) => {
+          let [peak, error] = [0, 0];
+          for (let j = species; j < exact.length; j += 2) {
+            peak = Math.max(peak, exact[j]!);
+            error = Math.max(error, Math.abs(found[j]! - exact[j]!));
+          }
+          return error / peak;
+        })
+      );
+    let deepest = Infinity;
+    const errors = Array.from({ length: 200 }, () => {
+      const K = between(20, 120);
+      const model = planarModelOf({
+        interaction: 'consumer-resource',
+        first: { growth: { kind: 'logistic', r: between(0.4, 1.6), K } },
+        second: { mortality: between(0.1, 0.5) },
+        feeding: { response: 'holling-2', a: between(0.02, 0.2), h: between(0.2, 1.5), e: between(0.2, 0.8) }
+      });
+      const at = { x: between(0.1, 0.9) * K, y: between(1, 15) };
+      const exact = integratePlanar(model, at, [0, 200], long, { rtol: 1e-12 }).values;
+      deepest = Math.min(
+        deepest,
+        exact.reduce((low, n) => Math.min(low, n))
+      );
+      return worst(integratePlanar(model, at, [0, 200], long, { rtol: 1e-6 }).values, exact);
+    }).sort((a, b) => a - b);
+    // Some must dip below anything an absolute tolerance would resolve, or this shows nothing.
+    expect(deepest).toBeLessThan(1e-12);
+    expect(errors[197]).toBeLessThan(1e-3);
+    expect(errors[100]).toBeLessThan(2e-5);
   });
 });
 
