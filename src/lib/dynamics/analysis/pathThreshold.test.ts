@@ -93,7 +93,7 @@ describe('pathThreshold', () => {
 
   it('claims nothing for paths that cannot be followed', () => {
     const growing: ModelSpec = {
-      ...alone(0),
+      interaction: 'competition',
       first: { growth: { kind: 'exponential', r: 5 } },
       second: { growth: { kind: 'exponential', r: 1 } },
       competition: { form: 'encounters', b12: 0, b21: 0 }
