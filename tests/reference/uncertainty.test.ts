@@ -120,10 +120,10 @@ describe('uncertain rates', () => {
         },
         rates
       },
-      300
+      600
     );
-    expectShare(shareOf(found, 'neither'), 0.32524424857836615, 300);
-    expectShare(shareOf(found, 'depends on the start'), 1 - 0.32524424857836615, 300);
+    expectShare(shareOf(found, 'neither'), 0.32524424857836615, 600);
+    expectShare(shareOf(found, 'depends on the start'), 1 - 0.32524424857836615, 600);
   });
 
   it('draws with a covariance of logarithms', () => {

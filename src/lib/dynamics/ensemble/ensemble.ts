@@ -2,7 +2,6 @@
  * Many draws of uncertain rates, each followed: where it comes to rest, and its path. Draws are numbered and each has a
  * stream of its own, so that chunks of them can be worked out anywhere, in any order, and give the same bytes.
  */
-import { findEquilibria } from '../analysis/equilibria';
 import { equallySpaced, simulate } from '../analysis/trajectory';
 import type { ModelSpec } from '../model/spec';
 import { randomStream } from '../numeric/random';
@@ -18,6 +17,7 @@ import {
   POINT_WIDTH,
   STABLE_CODES
 } from './fastEquilibria';
+import { seeManaged } from './managedEquilibria';
 import { bandsOf, quantileOf, type Bands } from './quantiles';
 
 /** What the stable resting places of a draw are, whatever the start. */
@@ -114,7 +114,7 @@ interface Resting {
   y: number;
 }
 
-/** Reads resting places by the fast search, or by the proven one where something is added or taken by the unit. */
+/** Reads the stable resting places of one draw after another. */
 function makeRestingReader(): (spec: ModelSpec, k: Float64Array) => Resting {
   const table = makeEquilibriaTable();
   const resting: Resting = { outcome: 0, x: Number.NaN, y: Number.NaN };
@@ -141,13 +141,10 @@ function makeRestingReader(): (spec: ModelSpec, k: Float64Array) => Resting {
       // The collapse of a ceiling that follows the resource rests at no equilibrium.
       if (k[L] !== 0 && mask === 0) undecided = true;
     } else {
-      const report = findEquilibria(spec);
-      for (const found of report.equilibria) {
-        if (found.stability === 'stable') seen(found.x, found.y);
-        else if (found.stability !== 'unstable') undecided = true;
-      }
-      for (const held of report.absorbing) if (held.stability === 'stable') seen(held.x, held.y);
-      if (report.continua.length > 0 || !report.complete) undecided = true;
+      seeManaged(spec, (x, y, isCertain) => {
+        if (isCertain) seen(x, y);
+        else undecided = true;
+      });
     }
     resting.outcome = outcomeOf(mask, undecided);
     if (nBoth !== 1) {
