@@ -3,10 +3,11 @@
  * joined by continuation, and what begins where another branch loses or gains a species is followed too.
  */
 import type { ModelSpec } from '../model/spec';
-import { between, locate, tangentAt, walk, type CurvePoint } from './continuation';
+import { locate, tangentAt, walk, type CurvePoint } from './continuation';
 import { findEquilibria } from './equilibria';
 import { faceKeyOf, faceOf, familyOf, type Face, type FaceKey, type Family } from './faces';
 import type { Equilibrium } from './results';
+import { agrees, apart, passes, touches } from './stretches';
 
 export interface BranchOptions {
   /** Number of equal parts of the range at whose ends all equilibria are found and proven; default 12. */
@@ -51,17 +52,6 @@ interface Seed {
 const BEYOND = 1e7;
 /** Two points nearer than this, in units of the scale, are one. */
 const SAME = 1e-7;
-/** A point of a stretch this near to a place, in units of the scale, is that place. */
-const NEAR = 1e-6;
-
-/** Distance of two points in units of the scale, by state alone. */
-function apart(face: Face, a: Float64Array, b: Float64Array): number {
-  const scale = new Float64Array(a.length);
-  face.curve.scale(a, scale);
-  let largest = 0;
-  for (let i = 0; i + 1 < a.length; i++) largest = Math.max(largest, Math.abs(a[i]! - b[i]!) / scale[i]!);
-  return largest;
-}
 
 function seedsOf(
   family: Family,
@@ -185,31 +175,6 @@ function snap(family: Family, face: Face, z: Float64Array, end: BranchEnd): void
   for (const q of [family.q0, family.q1]) if (Math.abs(z[last]! - q) < 1e-12 * (family.q1 - family.q0)) z[last] = q;
 }
 
-/** Whether the stretch between two points of a walk passes through a given point of the curve. */
-function passes(face: Face, a: CurvePoint, b: CurvePoint, z: Float64Array): boolean {
-  const scale = new Float64Array(z.length);
-  face.curve.scale(z, scale);
-  let along = 0;
-  let chord = 0;
-  for (let i = 0; i < z.length; i++) {
-    const step = (b.z[i]! - a.z[i]!) / scale[i]!;
-    along += (step * (z[i]! - a.z[i]!)) / scale[i]!;
-    chord += step * step;
-  }
-  const share = along / chord;
-  if (!(share >= -1e-9 && share <= 1 + 1e-9)) return false;
-  // Another part of the curve may run close by: only the point of this very stretch counts.
-  const there = between(face.curve, a, b, Math.min(1, Math.max(0, share)));
-  return there !== null && there.every((value, i) => Math.abs(value - z[i]!) <= NEAR * scale[i]!);
-}
-
-/** Whether a walk goes on in the direction in which it began. */
-function agrees(face: Face, { tangent }: CurvePoint, start: CurvePoint): boolean {
-  const scale = new Float64Array(tangent.length);
-  face.curve.scale(start.z, scale);
-  return tangent.reduce((sum, entry, i) => sum + (entry / scale[i]!) * (start.tangent[i]! / scale[i]!), 0) > 0;
-}
-
 /** Marks the seeds that a stretch of a branch passes. */
 function claim(face: Face, a: CurvePoint, b: CurvePoint, seeds: readonly Seed[], branch: number): void {
   const [qa, qb] = [face.q(a.z), face.q(b.z)];
@@ -301,14 +266,6 @@ export function branchesOf(
     }
   }
   return { family, faces, branches, doubts, seeded, stopped };
-}
-
-/** Whether a stretch of a branch passes through a place, or ends there. */
-function touches(face: Face, a: CurvePoint | undefined, b: CurvePoint, z: Float64Array): boolean {
-  const scale = new Float64Array(z.length);
-  face.curve.scale(z, scale);
-  if (z.every((value, i) => Math.abs(value - b.z[i]!) < NEAR * scale[i]!)) return true;
-  return a !== undefined && passes(face, a, b, z);
 }
 
 interface Meeting {
