@@ -137,10 +137,9 @@ test.describe('a study', () => {
   test('as its reviewer and its reader see it', async ({ page, browser }) => {
     await signIn(page, at('reviewer'));
     for (const part of ['/rates', '/review']) await expectSound(page, `/studies/${id}${part}`);
-    const other = await browser.newPage();
-    await signIn(other, at('observer'));
+    const other = await pageOf(browser, at('observer'));
     await expectSound(other, '/studies');
-    await other.close();
+    await other.context().close();
   });
 
   test('before anything is entered', async ({ page }) => {
