@@ -4,7 +4,7 @@
  */
 import AxeBuilder from '@axe-core/playwright';
 import { expect, test, type Page, type Response } from '@playwright/test';
-import { asForm, at, signIn, visit } from './people';
+import { asForm, at, pageOf, signIn, visit } from './people';
 import { createStudy, post } from './studies';
 
 const sizes = [
