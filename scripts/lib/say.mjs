@@ -2,7 +2,7 @@
 
 /** Prints one step as `label  sentence`, labels aligned. @param {string} label @param {string} sentence */
 export function say(label, sentence) {
-  console.log(`${label.padEnd(11)}${sentence}`);
+  console.log(`${label.padEnd(12)}${sentence}`);
 }
 
 /** Something a person can put right. The first line says what is wrong, the others what to do about it. */
